@@ -40,9 +40,8 @@ describe('expectedLines', () => {
     const strong = lines.filter((line) => line.share > 0.02);
     expect(strong.length).toBeGreaterThan(4);
     // Half the intensity lies in two lines J(ortho) + J(para) apart (Pople, Schneider, Bernstein: N = 8.7 + 0.5 Hz).
-    const [first, second] = [...lines].sort((p, q) => q.share - p.share);
-    expect(Math.abs(first!.offsetHz - second!.offsetHz)).toBeCloseTo(9.2, 1);
-    expect(first!.share + second!.share).toBeGreaterThan(0.5);
+    const doublet = lines.filter((line) => Math.abs(Math.abs(line.offsetHz) - 9.2 / 2) < 0.3);
+    expect(doublet.reduce((sum, line) => sum + line.share, 0)).toBeCloseTo(0.5, 2);
     // A triplet would have half of it in the middle.
     expect(strong.filter((line) => Math.abs(line.offsetHz) < 1).reduce((sum, line) => sum + line.share, 0)).toBeLessThan(0.05);
   });
