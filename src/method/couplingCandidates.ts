@@ -2,6 +2,8 @@ import type { MethodSignal, MethodSpecies } from './method.js';
 
 /** Two listed couplings are one when they agree this well: papers print 0.1 Hz and rarely agree better than 0.2 Hz. */
 export const sameCouplingHz = 0.3;
+/** A given coupling may lie this far from the listed one, because a quintet lists the mean of its two couplings. */
+const givenCouplingHz = 1;
 /** A given coupling smaller than this need not show in the listed pattern. */
 const unresolvedHz = 1.5;
 /** Protons on sp2 and on sp3 carbon lie on either side of it (common practice). */
@@ -104,9 +106,14 @@ function optionsOf(signals: readonly MethodSignal[], a: number, b: number, coupl
 function places(signal: MethodSignal, couplingHz: number, isGiven: boolean): { splitting: number; capacity: number }[] {
   const unlisted = { splitting: -1, capacity: Number.POSITIVE_INFINITY };
   if (signal.pattern.isMultiplet) return isGiven ? [unlisted] : [];
-  const listed = signal.pattern.splittings.flatMap((splitting, index) => {
-    const apart = Math.abs(Math.abs(splitting.couplingHz ?? couplingHz) - Math.abs(couplingHz));
-    return apart <= sameCouplingHz + 1e-9 ? [{ splitting: index, capacity: splitting.neighbours }] : [];
-  });
+  const within = isGiven ? givenCouplingHz : sameCouplingHz;
+  const listed = signal.pattern.splittings
+    .map((splitting, index) => ({
+      splitting: index,
+      capacity: splitting.neighbours,
+      apart: Math.abs(Math.abs(splitting.couplingHz ?? couplingHz) - Math.abs(couplingHz)),
+    }))
+    .filter(({ apart }) => apart <= within + 1e-9)
+    .sort((x, y) => x.apart - y.apart);
   return listed.length === 0 && isGiven && Math.abs(couplingHz) < unresolvedHz ? [unlisted] : listed;
 }

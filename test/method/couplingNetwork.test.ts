@@ -115,6 +115,15 @@ describe('couplingNetwork follows `coupled`', () => {
     expect(summary(entries)).toMatchObject({ couplings: [], contradictions: ['CH2-CH3'] });
   });
 
+  it('accepts the couplings that a listed quintet is the mean of', () => {
+    const entries = {
+      a: { listed: '1.38 (sext, J = 7.4 Hz, 2H)', coupled: { b: 7.5 } },
+      b: { listed: '1.61 (quint, J = 7.0 Hz, 2H)', coupled: { c: 6.6 } },
+      c: '4.06 (t, J = 6.6 Hz, 2H)',
+    };
+    expect(summary(entries)).toMatchObject({ couplings: ['a-b 7.5', 'b-c 6.6'], contradictions: [], unexplained: ['a 3 7.4'] });
+  });
+
   it('accepts a multiplet with named partners, and a small coupling that the listing does not resolve', () => {
     const multiplet = { CH2: { listed: '1.70-1.55 (m, 2H)', coupled: { CH3: 7.4 } }, CH3: '0.95 (t, J = 7.4 Hz, 3H)' };
     expect(summary(multiplet).couplings).toEqual(['CH2-CH3 7.4']);
