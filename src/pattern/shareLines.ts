@@ -1,16 +1,14 @@
-import { mergeLines } from './mergeLines.js';
 import type { Line } from './pattern.js';
 import type { SpinLines } from './spinSystem.js';
+import { thinLines } from './thinLines.js';
 
 const turnsMax = 100;
 /** The balance is done when no signal's sum is off by more than this, relative: far below any measurement. */
 const balanced = 1e-8;
 /** Share of a signal below which a line of it is left out. */
-const faintShare = 3e-5;
-/** Lines of one signal closer than this are one: no line width in a liquid shows the difference. */
-const sameLineHz = 0.02;
+const faintShare = 3e-6;
 /** Intensity, in nuclei, below which a whole line is left out before the balance. */
-const faintLine = 1e-6;
+const faintLine = 1e-7;
 
 /**
  * Deals the lines of a coupled system out to its signals. A line of a weakly coupled system belongs to one signal; a mixed one
@@ -41,13 +39,7 @@ export function shareLines(
         if (share > faintShare) own.push({ offsetHz: lines.frequencyHz[row]! - centre, share });
       }
       const total = own.reduce((sum, line) => sum + line.share, 0);
-      return [
-        signal,
-        mergeLines(
-          own.map((line) => ({ ...line, share: line.share / total })),
-          sameLineHz,
-        ),
-      ] as const;
+      return [signal, thinLines(own.map((line) => ({ ...line, share: line.share / total })))] as const;
     }),
   );
 }
