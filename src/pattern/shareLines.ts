@@ -2,13 +2,13 @@ import type { Line } from './pattern.js';
 import type { SpinLines } from './spinSystem.js';
 import { thinLines } from './thinLines.js';
 
-const turnsMax = 100;
+const turnsMax = 40;
 /** The balance is done when no signal's sum is off by more than this, relative: far below any measurement. */
-const balanced = 1e-8;
+const balanced = 1e-6;
 /** Share of a signal below which a line of it is left out. */
-const faintShare = 3e-6;
+const faintShare = 2e-5;
 /** Intensity, in nuclei, below which a whole line is left out before the balance. */
-const faintLine = 1e-7;
+const faintLine = 1e-6;
 
 /**
  * Deals the lines of a coupled system out to its signals. A line of a weakly coupled system belongs to one signal; a mixed one
@@ -48,7 +48,8 @@ export function shareLines(
 function balance(lines: SpinLines, rows: readonly number[], counts: readonly number[]): Float64Array {
   const width = counts.length;
   const table = new Float64Array(rows.length * width);
-  for (const [index, row] of rows.entries()) table.set(lines.ownMoments[row]!, index * width);
+  for (const [index, row] of rows.entries())
+    table.set(lines.ownMoments.subarray(row * width, row * width + width), index * width);
   const kept = rows.reduce((sum, row) => sum + lines.intensity[row]!, 0) / counts.reduce((sum, count) => sum + count, 0);
   const scale = new Float64Array(width).fill(1);
   for (let turn = 0; turn < turnsMax; turn++) {

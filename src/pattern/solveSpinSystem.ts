@@ -32,28 +32,30 @@ export function solveSpinSystem(system: SpinSystem): SpinLines {
 }
 
 function mergeTransitions(found: Transitions, middleHz: number, signals: readonly string[]): SpinLines {
-  const order = Array.from(found.frequencyHz.keys()).sort((a, b) => found.frequencyHz[b]! - found.frequencyHz[a]! || a - b);
-  const moments: number[] = [];
-  const intensity: number[] = [];
-  const ownMoments: Float64Array[] = [];
+  const order = Uint32Array.from(found.frequencyHz.keys()).sort((a, b) => found.frequencyHz[b]! - found.frequencyHz[a]! || a - b);
+  const frequencyHz = new Float64Array(order.length);
+  const intensity = new Float64Array(order.length);
+  const ownMoments = new Float64Array(order.length * signals.length);
   let startHz = Number.POSITIVE_INFINITY;
+  let line = -1;
   for (const index of order) {
-    const frequencyHz = found.frequencyHz[index]!;
-    if (startHz - frequencyHz > sameLineHz) {
-      startHz = frequencyHz;
-      moments.push(0);
-      intensity.push(0);
-      ownMoments.push(new Float64Array(signals.length));
+    const atHz = found.frequencyHz[index]!;
+    if (startHz - atHz > sameLineHz) {
+      startHz = atHz;
+      line++;
     }
-    const last = intensity.length - 1;
-    moments[last]! += frequencyHz * found.intensity[index]!;
-    intensity[last]! += found.intensity[index]!;
-    for (let signal = 0; signal < signals.length; signal++) ownMoments[last]![signal]! += found.own[signal]![index]!;
+    frequencyHz[line]! += atHz * found.intensity[index]!;
+    intensity[line]! += found.intensity[index]!;
+    for (let signal = 0; signal < signals.length; signal++) {
+      ownMoments[line * signals.length + signal]! += found.own[signal]![index]!;
+    }
   }
+  const count = line + 1;
+  for (let row = 0; row < count; row++) frequencyHz[row] = middleHz + frequencyHz[row]! / intensity[row]!;
   return {
-    frequencyHz: Float64Array.from(moments, (moment, index) => middleHz + moment / intensity[index]!),
-    intensity: Float64Array.from(intensity),
-    ownMoments,
+    frequencyHz: frequencyHz.slice(0, count),
+    intensity: intensity.slice(0, count),
+    ownMoments: ownMoments.slice(0, count * signals.length),
     signals,
   };
 }

@@ -21,7 +21,7 @@ export interface SpinLines {
   readonly frequencyHz: Float64Array;
   /** shape (n), summing to the number of nuclei. */
   readonly intensity: Float64Array;
-  /** shape (n x signals), rows as lines: squared transition moments of each signal's nuclei, weighted as the intensity. */
-  readonly ownMoments: readonly Float64Array[];
+  /** shape (n x signals) row by row: squared transition moments of each signal's nuclei, weighted as the intensity. */
+  readonly ownMoments: Float64Array;
   readonly signals: readonly string[];
 }

@@ -2,8 +2,8 @@ import { blockHamiltonian, loweringElement, type SpinBasis, type SpinBlock, spin
 import type { SpinSystem } from './spinSystem.js';
 import { type SymmetricEigen, symmetricEigen } from './symmetricEigen.js';
 
-/** Squared moment below which a transition is dropped; a full line of one nucleus has 1. No spectrum could show it. */
-const weakest = 1e-9;
+/** Intensity, in nuclei, below which a transition is dropped: thousands of them add up to a millionth of one nucleus. */
+const weakest = 1e-8;
 
 /** Growing lists of transitions: parallel arrays, because there are thousands. */
 export interface Transitions {
@@ -76,7 +76,7 @@ function addBetween(found: Transitions, upper: SymmetricEigen, lower: SymmetricE
     }
     for (let to = 0; to < p; to++) {
       const moment = dot(lowered, 0, lower.vectors, to * p, p);
-      if (moment * moment < weakest) continue;
+      if (weight * moment * moment < weakest) continue;
       found.frequencyHz.push(upper.values[from]! - lower.values[to]!);
       found.intensity.push(weight * moment * moment);
       for (let signal = 0; signal < signals; signal++) {
