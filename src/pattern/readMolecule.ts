@@ -82,25 +82,37 @@ function atomProblem(smiles: string, molecule: LibraryMolecule, index: number) {
 }
 
 function toGraph(molecule: LibraryMolecule): Molecule {
-  const atoms: MoleculeAtom[] = Array.from({ length: molecule.getAllAtoms() }, (_, index) => ({
+  const all = Array.from({ length: molecule.getAllAtoms() }, (_, index) => index);
+  // A hydrogen that the structure writes out ([H]C) is a hydrogen like any other, not an atom of its own.
+  const plain = all.filter((index) => isPlainHydrogen(molecule, index));
+  const kept = all.filter((index) => !plain.includes(index));
+  const place = new Map(kept.map((index, position) => [index, position]));
+  const atoms: MoleculeAtom[] = kept.map((index) => ({
     element: molecule.getAtomLabel(index),
     massNumber: molecule.getAtomMass(index),
     charge: molecule.getAtomCharge(index),
-    hydrogens: molecule.getImplicitHydrogens(index),
+    hydrogens: molecule.getImplicitHydrogens(index) + plain.filter((hydrogen) => molecule.getBond(hydrogen, index) >= 0).length,
     isAromatic: molecule.isAromaticAtom(index),
     isInRing: molecule.isRingAtom(index),
   }));
-  const bonds: MoleculeBond[] = Array.from({ length: molecule.getAllBonds() }, (_, index) => ({
-    atoms: [molecule.getBondAtom(0, index), molecule.getBondAtom(1, index)] as const,
-    order: molecule.getBondOrder(index),
-    isAromatic: molecule.isAromaticBond(index),
-  }));
+  const bonds = Array.from({ length: molecule.getAllBonds() }, (_, index) => index).flatMap((index): MoleculeBond[] => {
+    const a = place.get(molecule.getBondAtom(0, index));
+    const b = place.get(molecule.getBondAtom(1, index));
+    if (a === undefined || b === undefined) return [];
+    return [{ atoms: [a, b], order: molecule.getBondOrder(index), isAromatic: molecule.isAromaticBond(index) }];
+  });
   const adjacent = atoms.map((): (readonly [number, number])[] => []);
   for (const [index, { atoms: ends }] of bonds.entries()) {
     adjacent[ends[0]]!.push([ends[1], index]);
     adjacent[ends[1]]!.push([ends[0], index]);
   }
   return { atoms, bonds, adjacent };
+}
+
+function isPlainHydrogen(molecule: LibraryMolecule, index: number): boolean {
+  if (molecule.getAtomLabel(index) !== 'H' || molecule.getAtomMass(index) !== 0 || molecule.getAllConnAtoms(index) !== 1)
+    return false;
+  return molecule.getAtomLabel(molecule.getConnAtom(index, 0)) !== 'H';
 }
 
 function reasonOf(cause: unknown): string {
