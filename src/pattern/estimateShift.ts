@@ -75,8 +75,14 @@ function substituent(molecule: Molecule, atom: number, from: number): number {
   return kind === 'sp3' || kind === 'hetero' ? 0 : nextToPpm[kind];
 }
 
+/** A carbon whose own substituents draw: a hetero atom on it, or a carbonyl or aryl group beyond it. */
 function isPolar(molecule: Molecule, atom: number, from: number): boolean {
-  return molecule.adjacent[atom]!.some(([other]) => other !== from && !/^(?:C|H|Si)$/.test(molecule.atoms[other]!.element));
+  if (carrierKind(molecule, atom) !== 'sp3') return false;
+  return molecule.adjacent[atom]!.some(
+    ([other]) =>
+      other !== from &&
+      (!/^(?:C|H|Si)$/.test(molecule.atoms[other]!.element) || isCarbonyl(molecule, other) || molecule.atoms[other]!.isAromatic),
+  );
 }
 
 /** What ring positions one, two and three bonds away add (ortho, meta, para; common practice). */

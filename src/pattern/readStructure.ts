@@ -1,4 +1,5 @@
 import { ok, type Result } from '../base/result.js';
+import { carrierKind } from './carrierKind.js';
 import { diastereotopicAtoms } from './diastereotopicAtoms.js';
 import { estimateShift } from './estimateShift.js';
 import { inequivalentSides } from './inequivalentSides.js';
@@ -44,6 +45,7 @@ export function readStructure(smiles: string, element = 'H'): Result<Structure> 
       isExchangeable: first.isExchangeable,
       isAromatic: molecule.atoms[first.atom]!.isAromatic,
       isDiastereotopic: element === 'H' && uneven.has(first.atom),
+      isInSaturatedRing: molecule.atoms[first.atom]!.isInRing && carrierKind(molecule, first.atom) === 'sp3',
       ...(first.twin !== undefined ? { twin: twins.indexOf(first.twin) } : {}),
       ...(element === 'H' ? { estimatedShiftPpm: estimateShift(molecule, first.atom) } : {}),
       neighbours: neighboursOf(molecule, sites, first, keys, element),

@@ -34,6 +34,8 @@ export interface StructureGroup {
   readonly isAromatic: boolean;
   /** The protons of its CH2 (or the methyls of its CMe2) differ because of a stereocentre or a ring: splitting is not n + 1. */
   readonly isDiastereotopic: boolean;
+  /** Carried by a saturated ring, where neighbours couple by angle: splitting is not n + 1. */
+  readonly isInSaturatedRing: boolean;
   /** Set when a group was divided because two faces or sides differ; groups of one twin number may coincide. */
   readonly twin?: number;
   /** ppm, coarse (within about 0.6 ppm for most protons). */
