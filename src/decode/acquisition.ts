@@ -53,6 +53,12 @@ export interface Acquisition {
   /** Relaxation delay in seconds when a standard record states it. */
   readonly relaxationDelayS?: number;
   readonly temperatureC?: number;
+  /** `.ACQUISITION TIME` as stated. */
+  readonly acquisitionTimeS?: number;
+  /** `.FIELD` as stated. */
+  readonly fieldT?: number;
+  /** Texts of the private records that the site asked for, by the name asked; no prototype. Others are not read. */
+  readonly privateRecords?: Readonly<Record<string, string>>;
   /** SHA-256 of the decoded numbers and what is needed to place them: equal for the same data under another header. */
   readonly dataSha256: string;
   /** Understood oddities (tolerated, recorded). */

@@ -1,0 +1,59 @@
+import type { Flag } from '../base/flag.js';
+import { ok, type Result } from '../base/result.js';
+import { checkAbscissa } from './checkAbscissa.js';
+import { checkCount } from './checkCount.js';
+import { checkOrdinates, extremesOf } from './checkOrdinates.js';
+import { compareDecoders, type WalkedTable } from './compareDecoders.js';
+import { refuse, tolerated } from './jcampProblem.js';
+import type { Layout } from './layout.js';
+import { firstLineOf } from './recordText.js';
+import { walkTable } from './walkTable.js';
+
+/** Checked numbers of a block. */
+export interface Tables {
+  readonly real: Float64Array;
+  readonly imag?: Float64Array;
+  readonly flags: readonly Flag[];
+}
+
+/**
+ * Reads the tables of a block: walks them, holds them against everything that the header states, and against a second decoder.
+ *
+ * @errors every table code of `jcampCodes`
+ */
+export function readTables(bytes: Uint8Array, layout: Layout): Result<Tables> {
+  const flags: Flag[] = [];
+  const walked: WalkedTable[] = [];
+  for (const plan of layout.tables) {
+    const one = readTable(bytes, layout, plan, flags);
+    if (!one.ok) return one;
+    walked.push(one.value);
+  }
+  const [real, imag] = walked.map(({ table }) => table.values);
+  if (imag && imag.length !== real!.length)
+    return refuse('jcamp-pages', `the real page has ${real!.length} points, the imaginary one ${imag.length}`);
+  const ordinates = checkOrdinates(walked.map(({ table }) => table));
+  if (!ordinates.ok) return ordinates;
+  const agreed = compareDecoders(walked);
+  if (!agreed.ok) return agreed;
+  return ok({ real: real!, ...(imag ? { imag } : {}), flags: [...flags, ...ordinates.value] });
+}
+
+function readTable(bytes: Uint8Array, layout: Layout, plan: Layout['tables'][number], flags: Flag[]): Result<WalkedTable> {
+  const { record, pointsStated, factor } = plan;
+  const { next: start } = firstLineOf(bytes, record);
+  const walk = walkTable(bytes, { start, end: record.end, firstLine: record.line + 1 }, pointsStated);
+  if (!walk.ok) return walk;
+  const state = walk.value;
+  if (state.count < 2)
+    return refuse('jcamp-too-few-points', `the table at line ${record.line} holds ${state.count} points`, { line: record.line });
+  for (const checked of [checkCount(state, plan, layout.abscissa), checkAbscissa(state, layout.abscissa)]) {
+    if (!checked.ok) return checked;
+    flags.push(...checked.value);
+  }
+  if (state.endsInDifference)
+    flags.push(tolerated('jcamp-final-check-missing', `the table at line ${record.line} ends without its last check ordinate`));
+  const values = state.ordinates.subarray(0, state.count).map((value) => value * factor.value);
+  const table = extremesOf(plan, values);
+  return table.ok ? ok({ state, table: table.value, start }) : table;
+}
