@@ -1,0 +1,143 @@
+import type { Spectrum } from '../spectrum/spectrum.js';
+import type { Target } from './signalTargets.js';
+
+/** Where a signal was found before fitting. */
+export interface Located {
+  readonly shiftHz: number;
+  /** Whether there is more than noise there: only then may the fit move the shift. */
+  readonly isPresent: boolean;
+  /** Gain in chi-square of placing the pattern there. */
+  readonly gain: number;
+}
+
+/** A gain in chi-square that noise alone reaches in fewer than 1 of 10,000 searches over some hundred places. */
+const gainMin = 30;
+const kernelWidths = 4;
+
+/**
+ * Finds the place of each declared pattern inside its search window: lines are weighed by a matched filter, and a place counts
+ * by how well the whole pattern fits there, less what does not fit. The strongest is placed first and taken away before the
+ * next one is sought, so that two signals never claim the same lines.
+ *
+ * @param targets signals with lines; the others are left out of the result
+ * @param widthHz line width of this spectrum
+ * @returns by key
+ * @source  matched filter (textbook); order of search: own
+ */
+export function locateSignals(spectrum: Spectrum, targets: readonly Target[], widthHz: number): Map<string, Located> {
+  const located = new Map<string, Located>();
+  const left = Float64Array.from(spectrum.real);
+  for (const group of overlapping(
+    targets.filter(({ lines }) => lines.length > 0),
+    spectrum.observeMhz,
+    widthHz,
+  )) {
+    const open = new Set(group);
+    while (open.size > 0) {
+      const candidates = [...open].map((target) => ({ target, place: bestPlace(spectrum, left, target, widthHz) }));
+      candidates.sort((a, b) => b.place.gain - a.place.gain || (a.target.key < b.target.key ? -1 : 1));
+      const { target, place } = candidates[0]!;
+      open.delete(target);
+      const isPresent = place.gain > gainMin;
+      const shiftHz = isPresent ? place.shiftHz : target.signal.shiftPpm * spectrum.observeMhz;
+      located.set(target.key, { shiftHz, isPresent, gain: place.gain });
+      if (isPresent) takeAway(spectrum, left, target, place, widthHz);
+    }
+  }
+  return located;
+}
+
+interface Place {
+  readonly shiftHz: number;
+  readonly gain: number;
+  readonly area: number;
+}
+
+function bestPlace(spectrum: Spectrum, left: Float64Array, target: Target, widthHz: number): Place {
+  const { observeMhz, firstPpm, stepHz, noise } = spectrum;
+  const { signal, lines } = target;
+  const width = signal.pattern.isBroad ? 8 * widthHz : widthHz;
+  const firstHz = firstPpm * observeMhz;
+  const centre = signal.shiftPpm * observeMhz;
+  const reach = signal.withinPpm * observeMhz;
+  const high = centre + reach + lines[0]!.offsetHz;
+  const low = centre - reach + lines.at(-1)!.offsetHz;
+  const from = Math.max(0, Math.floor((firstHz - high) / stepHz) - 1);
+  const to = Math.min(left.length, Math.ceil((firstHz - low) / stepHz) + 2);
+  const none = { shiftHz: centre, gain: 0, area: 0 };
+  if (to - from < 3) return none;
+  const { filtered, energy } = matched(left, from, to, width, stepHz);
+  const shares = lines.reduce((sum, { share }) => sum + share * share, 0);
+  let best: Place & { score: number } = { ...none, score: 0 };
+  const step = Math.max(1, Math.floor(width / (5 * stepHz)));
+  const start = Math.max(0, Math.ceil((firstHz - (centre + reach)) / stepHz));
+  const end = Math.min(left.length - 1, Math.floor((firstHz - (centre - reach)) / stepHz));
+  for (let index = start; index <= end; index += step) {
+    const shiftHz = firstHz - index * stepHz;
+    let area = 0;
+    for (const { offsetHz, share } of lines) area += share * (filtered[Math.round(index - offsetHz / stepHz) - from] ?? 0);
+    area /= shares;
+    if (area <= 0) continue;
+    let misfit = 0;
+    for (const { offsetHz, share } of lines) {
+      misfit += ((filtered[Math.round(index - offsetHz / stepHz) - from] ?? 0) - share * area) ** 2;
+    }
+    const gain = ((area * area * shares - misfit) * energy) / (noise * noise);
+    const off = (shiftHz - centre) / reach;
+    const score = gain * Math.exp(-off * off);
+    if (score > best.score) best = { shiftHz, gain, area, score };
+  }
+  return best;
+}
+
+/** Least-squares area of one Lorentzian at every point, and the energy of the kernel. */
+function matched(data: Float64Array, from: number, to: number, widthHz: number, stepHz: number) {
+  const reach = Math.ceil((kernelWidths * widthHz) / stepHz);
+  const kernel = Float64Array.from({ length: 2 * reach + 1 }, (_, k) => {
+    const u = (2 * (k - reach) * stepHz) / widthHz;
+    return 2 / (Math.PI * widthHz * (1 + u * u));
+  });
+  const mean = kernel.reduce((sum, value) => sum + value, 0) / kernel.length;
+  for (let k = 0; k < kernel.length; k += 1) kernel[k] = kernel[k]! - mean;
+  const energy = kernel.reduce((sum, value) => sum + value * value, 0);
+  const filtered = new Float64Array(to - from);
+  for (let i = from; i < to; i += 1) {
+    let sum = 0;
+    for (let k = -reach; k <= reach; k += 1) sum += (data[i + k] ?? 0) * kernel[k + reach]!;
+    filtered[i - from] = sum / energy;
+  }
+  return { filtered, energy };
+}
+
+function takeAway(spectrum: Spectrum, left: Float64Array, target: Target, place: Place, widthHz: number): void {
+  const { stepHz, firstPpm, observeMhz } = spectrum;
+  const width = target.signal.pattern.isBroad ? 8 * widthHz : widthHz;
+  for (const { offsetHz, share } of target.lines) {
+    const at = (firstPpm * observeMhz - place.shiftHz - offsetHz) / stepHz;
+    const reach = Math.ceil((20 * width) / stepHz);
+    for (let i = Math.max(0, Math.floor(at - reach)); i <= Math.min(left.length - 1, at + reach); i += 1) {
+      const u = (2 * (i - at) * stepHz) / width;
+      left[i] = left[i]! - (place.area * share * 2) / (Math.PI * width * (1 + u * u));
+    }
+  }
+}
+
+/** Groups of targets whose search windows touch. */
+function overlapping(targets: readonly Target[], observeMhz: number, widthHz: number): Target[][] {
+  const spans = targets
+    .map((target) => {
+      const { shiftPpm, withinPpm } = target.signal;
+      const reach = withinPpm * observeMhz + 2 * widthHz;
+      const centre = shiftPpm * observeMhz;
+      return { target, low: centre - reach + target.lines.at(-1)!.offsetHz, high: centre + reach + target.lines[0]!.offsetHz };
+    })
+    .sort((a, b) => b.high - a.high);
+  const groups: Target[][] = [];
+  let bottom = Number.POSITIVE_INFINITY;
+  for (const { target, low, high } of spans) {
+    if (high >= bottom) groups.at(-1)!.push(target);
+    else groups.push([target]);
+    bottom = groups.at(-1)!.length === 1 ? low : Math.min(bottom, low);
+  }
+  return groups;
+}

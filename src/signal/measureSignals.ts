@@ -1,0 +1,75 @@
+import type { Method } from '../method/method.js';
+import type { Spectrum } from '../spectrum/spectrum.js';
+import { addExtraLines } from './addExtraLines.js';
+import { describeSignal } from './describeSignal.js';
+import { drawStrip } from './drawStrip.js';
+import { findUnassigned } from './findUnassigned.js';
+import { fitRegions } from './fitRegions.js';
+import { flagSignals } from './flagSignals.js';
+import { groupRegions } from './groupRegions.js';
+import { guessWidth } from './guessWidth.js';
+import { learnShape } from './learnShape.js';
+import { locateSignals } from './locateSignals.js';
+import type { MeasuredSignal, Measurement } from './measured.js';
+import { measureRange } from './measureRange.js';
+import { measureSolvents } from './measureSolvents.js';
+import { signalTargets, type Target } from './signalTargets.js';
+import { whiteningFilter } from './whiteningFilter.js';
+
+/** A line found beside a pattern must hold this share of the region's area: below, it may be the line shape's own fault. */
+const leftOverShareMin = 0.006;
+
+/**
+ * The table of contents of measuring: locate each declared pattern, learn the line shape, fit region by region, look at what
+ * is left over, and say what was found.
+ *
+ * @param spectrum phased, flat, referenced
+ * @param method   signals with their patterns
+ * @returns signals in method order; areas in units of the spectrum x Hz
+ * @source  see the steps
+ */
+export function measureSignals(spectrum: Spectrum, method: Method): Measurement {
+  const targets = signalTargets(method, spectrum.observeMhz);
+  const whitening = whiteningFilter(spectrum.noiseCorrelation);
+  const guessHz = guessWidth(spectrum, targets);
+  const located = locateSignals(spectrum, targets, guessHz);
+  const widthOf = (target: Target) => (target.signal.pattern.isBroad ? 8 : 1) * guessHz;
+  const regions = groupRegions(spectrum, targets, located, widthOf);
+
+  const shape = learnShape(spectrum, regions, located, guessHz, whitening);
+  const fitted = fitRegions(spectrum, regions, located, shape, whitening);
+  const explained = fitted.map((region) => addExtraLines(region, leftOverShareMin));
+
+  const byKey = new Map<string, MeasuredSignal>();
+  for (const region of explained) {
+    for (const target of region.region.targets) {
+      const strip = drawStrip(spectrum, region, target);
+      byKey.set(target.key, { ...describeSignal(spectrum, region, target), ...(strip ? { strip } : {}) });
+    }
+  }
+  const ranged = targets.filter(({ lines }) => lines.length === 0);
+  for (const target of ranged) byKey.set(target.key, measureRange(spectrum, target, explained));
+  const signals = targets.map(({ key }) => byKey.get(key)!);
+
+  return {
+    signals,
+    unassigned: findUnassigned(spectrum, method, explained),
+    solvents: measureSolvents(spectrum, method, explained),
+    signalToNoise: tallestLine(signals, explained, spectrum.noise),
+    lineShape: { widthHz: shape.widthHz, lorentzShare: shape.lorentzShare, asymmetry: spectrum.quality.referenceAsymmetry ?? 0 },
+    flags: flagSignals(signals),
+  };
+}
+
+/** Height of the tallest data point under a diagnostic signal over the rms noise. */
+function tallestLine(signals: readonly MeasuredSignal[], regions: ReturnType<typeof fitRegions>, noise: number): number {
+  let tallest = 0;
+  const diagnostic = new Set(
+    signals.filter(({ use, verdict }) => use !== 'ignore' && verdict !== 'absent').map(({ key }) => key),
+  );
+  for (const { region, window, fit } of regions) {
+    if (!region.targets.some(({ key }) => diagnostic.has(key))) continue;
+    for (const value of window.data) tallest = Math.max(tallest, value - fit.level);
+  }
+  return noise > 0 ? tallest / noise : 0;
+}

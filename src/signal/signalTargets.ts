@@ -1,0 +1,82 @@
+import { expectedLines } from '../method/expectedLines.js';
+import type { Method, MethodSignal, MethodSpecies } from '../method/method.js';
+import type { Line, Pattern } from '../pattern/pattern.js';
+import type { TermLine } from './regionModel.js';
+
+/** One signal of the method with the lines that it should show at this field. */
+export interface Target {
+  readonly key: string;
+  readonly species: MethodSpecies;
+  readonly signal: MethodSignal;
+  /** Empty when the method declares no lines (`m`). */
+  readonly lines: readonly TermLine[];
+  /** Listed couplings, Hz, in the order of `perCoupling`. */
+  readonly couplingsHz: readonly number[];
+}
+
+const remembered = new WeakMap<MethodSpecies, Map<number, ReadonlyMap<string, readonly Line[]>>>();
+
+/**
+ * Every signal of a method with its expected lines at a field. The lines depend on species and field alone, so they are
+ * computed once for a run.
+ *
+ * @param observeMhz MHz of the observed nucleus
+ * @returns in method order
+ * @source  `expectedLines`
+ */
+export function signalTargets(method: Method, observeMhz: number): Target[] {
+  return method.species.flatMap((species) => {
+    const lines = linesOf(species, observeMhz);
+    return species.signals.map((signal) => {
+      const couplingsHz = declaredCouplings(signal.pattern);
+      return {
+        key: signal.key,
+        species,
+        signal,
+        lines: withCouplings(lines.get(signal.id) ?? [], signal.pattern, couplingsHz),
+        couplingsHz,
+      };
+    });
+  });
+}
+
+function linesOf(species: MethodSpecies, observeMhz: number): ReadonlyMap<string, readonly Line[]> {
+  const byField = remembered.get(species) ?? new Map<number, ReadonlyMap<string, readonly Line[]>>();
+  remembered.set(species, byField);
+  const known = byField.get(observeMhz);
+  if (known !== undefined) return known;
+  const lines = expectedLines(species, observeMhz);
+  byField.set(observeMhz, lines);
+  return lines;
+}
+
+/** Couplings when every splitting gives one; otherwise none, because then the offsets cannot be told apart. */
+function declaredCouplings(pattern: Pattern): number[] {
+  const couplings = pattern.splittings.flatMap(({ couplingHz }) => (couplingHz === undefined ? [] : [Math.abs(couplingHz)]));
+  return couplings.length === pattern.splittings.length ? couplings : [];
+}
+
+/**
+ * Says how each line moves when a listed coupling changes: as the nearest first-order line does, whose offset is
+ * sum m(k) J(k). Near strong coupling this is rough, which is enough for corrections of a tenth of a hertz.
+ *
+ * @param lines shape (n), Hz from the signal's shift
+ */
+export function withCouplings(lines: readonly Line[], pattern: Pattern, couplingsHz: readonly number[]): TermLine[] {
+  if (couplingsHz.length === 0) return lines.map((line) => ({ ...line, perCoupling: [] }));
+  let levels: { offsetHz: number; m: number[] }[] = [{ offsetHz: 0, m: [] }];
+  pattern.splittings.forEach(({ neighbours }, k) => {
+    levels = levels.flatMap(({ offsetHz, m }) =>
+      Array.from({ length: neighbours + 1 }, (_, step) => {
+        const own = neighbours / 2 - step;
+        return { offsetHz: offsetHz + own * couplingsHz[k]!, m: [...m, own] };
+      }),
+    );
+  });
+  return lines.map((line) => {
+    const near = levels.reduce((best, level) =>
+      Math.abs(level.offsetHz - line.offsetHz) < Math.abs(best.offsetHz - line.offsetHz) ? level : best,
+    );
+    return { ...line, perCoupling: near.m };
+  });
+}
