@@ -71,10 +71,10 @@ export function simulateNight(method: Method, seed: number, count = 28): NightPo
   });
 }
 
-/** Second order, unequal start: kt (B0 - A0) = ln(A0 B / (A B0)) with A0 = 1, B0 = 1.35. */
+/** Second order, unequal start: kt (B0 - A0) = ln(A0 B / (A B0)) with A0 = 1, B0 = 1.8. */
 function conversionAt(elapsedS: number): number {
-  const excess = 0.35;
-  const growth = Math.exp(2.9e-4 * excess * elapsedS);
+  const excess = 0.8;
+  const growth = Math.exp(1.15e-4 * excess * elapsedS);
   return ((1 + excess) * (growth - 1)) / ((1 + excess) * growth - 1);
 }
 
@@ -82,7 +82,7 @@ function amountsAt(conversion: number, impurityShare: number): Record<string, nu
   return {
     alcohol: 1 - conversion,
     ester: conversion * (1 - impurityShare),
-    anhydride: 1.35 - conversion,
+    anhydride: 1.8 - conversion,
     acid: conversion,
     standard: 0.161,
   };
