@@ -48,7 +48,9 @@ function speciesView(species: CheckedSpecies, widthHz: number) {
   return {
     id: species.id,
     facts: [...facts, ...mass].join(', '),
-    unlisted: species.unlisted.map(({ label, nuclei, expected }) => `${label} (${expected}, ${nuclei} nuclei)`).join(', '),
+    unlisted: species.unlisted
+      .map(({ label, nuclei, expected }) => `${label} (${expected}, ${nuclei} ${nuclei === 1 ? 'nucleus' : 'nuclei'})`)
+      .join(', '),
     signals: species.signals.map((signal) => signalView(signal, widthHz)),
   };
 }

@@ -24,7 +24,9 @@ export function checkText(report: CheckReport): string {
 function speciesLines(species: CheckedSpecies): string[] {
   const facts = [species.name, species.role, species.smiles, species.formula].filter((fact) => fact !== undefined);
   const mass = species.molarMass === undefined ? [] : [`${plainNumber(species.molarMass, 3)} g/mol`];
-  const unlisted = species.unlisted.map(({ label, nuclei, expected }) => `${label} (${expected}, ${nuclei} nuclei)`);
+  const unlisted = species.unlisted.map(
+    ({ label, nuclei, expected }) => `${label} (${expected}, ${nuclei} ${nuclei === 1 ? 'nucleus' : 'nuclei'})`,
+  );
   return [
     `${species.id}: ${[...facts, ...mass].join(', ')}`,
     ...species.signals.flatMap(signalLines),

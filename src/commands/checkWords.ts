@@ -9,16 +9,22 @@ const listedPeaksMax = 9;
 export function structureWords({ structure }: CheckedSignal): string | undefined {
   if (structure === undefined) return undefined;
   if (structure.labels.length === 0) return 'no group of the structure can be this signal';
-  const labels = structure.labels.join(' and ');
-  if (structure.expected === undefined) return `${labels}: the counts agree`;
+  const labels = [...new Set(structure.labels)]
+    .map((label) => {
+      const count = structure.labels.filter((other) => other === label).length;
+      return count === 1 ? label : `${count} x ${label}`;
+    })
+    .join(' and ');
+  if (structure.expected === undefined) return `${labels}, the counts agree`;
   const neighbours = countWords(structure.expectedNeighbours ?? 0, 'neighbour');
   const verdict = structure.agrees ? 'agrees' : 'the method disagrees';
   return `${labels} has ${neighbours}: ${patternWords(structure.expected)} is expected, ${verdict}`;
 }
 
 /** How the pattern of a signal is computed, in words. */
-export function basisWords({ basis, partners }: CheckedSignal): string {
+export function basisWords({ basis, partners, atFields }: CheckedSignal): string {
   if (basis === 'undeclared') return 'no lines are declared';
+  if (atFields[0]?.lines.length === 1) return 'one line';
   if (basis === 'first-order') return 'first order, no partner among the signals of the species';
   const named = partners.map(({ signal, couplingHz, origin }) => `${signal} (${plainNumber(couplingHz, 1)} Hz, ${origin})`);
   return `exactly, coupled to ${named.join(' and ')}`;

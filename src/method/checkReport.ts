@@ -79,6 +79,7 @@ export function checkMethod(method: Method, fieldsMhz: readonly number[], widthH
   const contradictions = method.species.flatMap(couplingFlags);
   const flags = [...contradictions, ...reports.flatMap((report) => report?.flags ?? [])];
   const isNote = (flag: Flag) => (flag.weight === 'note' ? 1 : 0);
+  const element = method.nucleus.replace(/^\d+/, '');
   const inflation = fieldsMhz.map((observeMhz) => fitInflation(method, observeMhz, widthHz));
   return {
     title: method.title,
@@ -88,19 +89,27 @@ export function checkMethod(method: Method, fieldsMhz: readonly number[], widthH
     ...(method.solvent !== undefined ? { solvent: method.solvent } : {}),
     fieldsMhz,
     widthHz,
-    species: method.species.map((species, index) => checkSpecies(species, reports[index], fieldsMhz, widthHz, inflation)),
+    species: method.species.map((species, index) =>
+      checkSpecies(species, reports[index], { fieldsMhz, widthHz, inflation, element }),
+    ),
     collisions: fieldsMhz.flatMap((observeMhz) => findCollisions(method, observeMhz, widthHz)),
     flags: flags.sort((a, b) => isNote(a) - isNote(b)),
     problems: structures.flatMap((result) => (result.ok ? [] : [result.problem])),
   };
 }
 
+interface CheckSettings {
+  readonly fieldsMhz: readonly number[];
+  readonly widthHz: number;
+  /** One map per field: signal key -> factor. */
+  readonly inflation: readonly ReadonlyMap<string, number>[];
+  readonly element: string;
+}
+
 function checkSpecies(
   species: MethodSpecies,
   report: StructureReport | undefined,
-  fieldsMhz: readonly number[],
-  widthHz: number,
-  inflation: readonly ReadonlyMap<string, number>[],
+  { fieldsMhz, widthHz, inflation, element }: CheckSettings,
 ): CheckedSpecies {
   const network = couplingNetwork(species);
   const lines = fieldsMhz.map((observeMhz) => expectedLines(species, observeMhz));
@@ -119,7 +128,7 @@ function checkSpecies(
       const isDeclared = (lines[0]?.get(signal.id) ?? []).length > 0;
       return {
         key: signal.key,
-        listed: printSignal(signal),
+        listed: printSignal(signal, element),
         use: signal.use,
         ...(match !== undefined ? { structure: match } : {}),
         basis: !isDeclared ? 'undeclared' : partners.length > 0 ? 'exact' : 'first-order',
@@ -142,9 +151,9 @@ function partnersOf(network: CouplingNetwork, id: string): CheckedSignal['partne
 }
 
 /** `4.12 (q, J = 7.1 Hz, 2H)`. */
-function printSignal(signal: MethodSignal): string {
+function printSignal(signal: MethodSignal, element: string): string {
   const shift = signal.rangePpm !== undefined ? `${signal.rangePpm[1]}-${signal.rangePpm[0]}` : `${signal.shiftPpm}`;
-  return `${shift} (${printPattern(signal.pattern)}, ${signal.nuclei} nuclei)`;
+  return `${shift} (${printPattern(signal.pattern)}, ${signal.nuclei}${element})`;
 }
 
 function couplingFlags(species: MethodSpecies): Flag[] {

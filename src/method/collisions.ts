@@ -20,6 +20,8 @@ export interface Collision {
 
 /** Less is only the far tails of Lorentzian lines on each other. */
 const overlapMin = 0.05;
+/** Below it an integral is wrong by less than the overlap, and may still serve. */
+const overlapIntegrable = 0.1;
 /** A fit costs nothing worth telling below this factor. */
 const factorMin = 1.05;
 const factorHard = 5;
@@ -100,7 +102,9 @@ function ofLines(a: Placed, b: Placed, observeMhz: number, widthHz: number): Col
   if (overlap < overlapMin && Math.max(uFactorA, uFactorB) < factorMin) return undefined;
   const factor = Math.max(uFactorA, uFactorB);
   const percent = Math.round(100 * overlap);
-  const head = `at ${plainMhz(observeMhz)} MHz ${a.signal.key} and ${b.signal.key} overlap by ${percent} %: not measurable by plain integration, `;
+  const plain =
+    overlap < overlapIntegrable ? `plain integration is off by up to ${percent} %` : 'not measurable by plain integration';
+  const head = `at ${plainMhz(observeMhz)} MHz ${a.signal.key} and ${b.signal.key} overlap by ${percent} %: ${plain}, `;
   const fit =
     factor > factorHopeless
       ? 'nor by fit: the two patterns cannot be told apart'

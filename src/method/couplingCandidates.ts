@@ -1,4 +1,5 @@
 import type { MethodSignal, MethodSpecies } from './method.js';
+import { structureHints } from './structureHints.js';
 
 /** Two listed couplings are one when they agree this well: papers print 0.1 Hz and rarely agree better than 0.2 Hz. */
 export const sameCouplingHz = 0.3;
@@ -34,10 +35,14 @@ export interface Candidate {
   readonly options: readonly Option[];
 }
 
-/** Lists the pairs of signals that may couple: those given, and those whose listed couplings and counts allow it. */
+/**
+ * Lists the pairs of signals that may couple: those given, and those whose listed couplings and counts allow it and whom the
+ * structure, when there is one, does not place apart.
+ */
 export function couplingCandidates(species: MethodSpecies): Candidate[] {
   const { signals } = species;
   const candidates: Candidate[] = [];
+  const hint = structureHints(species);
   for (let a = 0; a < signals.length; a++) {
     for (let b = a + 1; b < signals.length; b++) {
       const given = signals[a]!.coupled?.[signals[b]!.id] ?? signals[b]!.coupled?.[signals[a]!.id];
@@ -46,7 +51,9 @@ export function couplingCandidates(species: MethodSpecies): Candidate[] {
         candidates.push({ a, b, couplingHz: given, origin: 'given', options });
       } else if (signals[a]!.coupled === undefined && signals[b]!.coupled === undefined) {
         const inferred = inferredCoupling(signals, a, b);
-        if (inferred !== undefined && !hasRival(signals, a, b)) candidates.push(inferred);
+        if (inferred === undefined) continue;
+        const said = hint(a, b);
+        if (said === 'neighbours' || (said === 'unknown' && !hasRival(signals, a, b))) candidates.push(inferred);
       }
     }
   }

@@ -10,8 +10,8 @@ export interface PatternPeak {
 }
 
 const pointsPerWidth = 12;
-/** Of the tallest peak; fainter ones drown in noise and roots of others. */
-const faintest = 0.004;
+/** Of the tallest peak; the outermost line of a nonet still counts, what is fainter is not seen by eye. */
+const faintest = 0.0125;
 const pointsMax = 200_000;
 
 /**

@@ -3,8 +3,8 @@ import { couplingNetwork } from '../../src/method/couplingNetwork.js';
 import { type Entry, speciesOf } from './speciesOf.js';
 
 /** Couplings as `a-b J sets`, for short expectations. */
-function summary(entries: Readonly<Record<string, Entry>>) {
-  const network = couplingNetwork(speciesOf(entries));
+function summary(entries: Readonly<Record<string, Entry>>, smiles?: string) {
+  const network = couplingNetwork(speciesOf(entries, smiles === undefined ? {} : { smiles }));
   return {
     couplings: network.couplings.map(({ a, b, couplingHz, sets }) => `${a}-${b} ${couplingHz}${sets > 1 ? ` x${sets}` : ''}`),
     unexplained: [...network.unexplained].flatMap(([id, rest]) =>
@@ -90,6 +90,25 @@ describe('couplingNetwork infers partners from the listed couplings', () => {
     expect(summary(entries).couplings).toEqual([]);
     const aliphatic = { a: '7.95 (d, J = 8.0 Hz, 1H)', b: '7.60 (d, J = 8.1 Hz, 1H)', rest: '1.40-1.20 (m, 2H)' };
     expect(summary(aliphatic).couplings).toEqual(['a-b 8.05']);
+  });
+
+  it('lets the structure choose where the couplings alone cannot', () => {
+    const entries = {
+      OCH2: '4.12 (q, J = 7.1 Hz, 2H)',
+      COCH2: '2.32 (q, J = 7.1 Hz, 2H)',
+      CH3: '1.25 (t, J = 7.1 Hz, 3H)',
+      other: '1.14 (t, J = 7.1 Hz, 3H)',
+    };
+    expect(summary(entries).couplings).toEqual([]);
+    const found = summary(entries, 'CCOC(=O)CC').couplings;
+    expect(found).toContain('OCH2-CH3 7.1');
+    expect(found).toContain('COCH2-other 7.1');
+  });
+
+  it('does not pair triplets that the structure places apart', () => {
+    const entries = { OCH2: '4.05 (t, J = 6.8 Hz, 2H)', COCH2: '2.30 (t, J = 6.9 Hz, 2H)' };
+    expect(summary(entries).couplings).toEqual(['OCH2-COCH2 6.85']);
+    expect(summary(entries, 'CC(=O)OCCCCC(C)=O').couplings).toEqual([]);
   });
 
   it('couples nothing to a singlet, to a pattern without couplings, or across different couplings', () => {
