@@ -30,6 +30,8 @@ export function checkAbscissa(state: TableState, plan: AbscissaPlan): Result<Fla
     return refuse('jcamp-axis', `the abscissa runs from ${plan.first.value} to ${plan.last.value} by factor ${factor}: no axis`);
   const delta = checkDelta(plan, step);
   if (!delta.ok) return delta;
+  const spacing = checkFactor(plan, step, intervals);
+  if (!spacing.ok) return spacing;
   const wrong = firstMisplaced(state, plan, step);
   if (!wrong) return ok([...delta.value, ...coarseFlag(state, step / factor)]);
   if (onlyCounts(state, plan, step))
@@ -51,10 +53,12 @@ export function checkAbscissa(state: TableState, plan: AbscissaPlan): Result<Fla
 function firstMisplaced(state: TableState, plan: AbscissaPlan, step: number): LineStart | undefined {
   const factor = plan.factor.value;
   const relative = Math.min(1e-5, plan.factor.rounding / Math.abs(factor)) + 1e-9;
-  const slack = slackSteps * Math.abs(step / factor);
+  const oneStep = Math.abs(step / factor);
   return state.lineStarts.find(({ abscissa, pointIndex, rounding }) => {
     const expected = (plan.first.value + step * pointIndex) / factor;
-    return !(Math.abs(abscissa - expected) <= rounding + slack + relative * Math.abs(expected));
+    const whole = rounding + slackSteps * oneStep + relative * Math.abs(expected);
+    const allowed = rounding < oneStep ? Math.min(whole, 0.9 * oneStep) : whole;
+    return !(Math.abs(abscissa - expected) <= allowed);
   });
 }
 
@@ -82,6 +86,19 @@ function checkDelta({ delta }: AbscissaPlan, step: number): Result<Flag[]> {
   return ok([
     tolerated('jcamp-delta-sign', `DELTAX is ${delta.value}, but the abscissa runs the other way from first to last point`),
   ]);
+}
+
+/** A factor that is the step, as in tables that count points, must be the step that FIRST and LAST give. */
+function checkFactor(plan: AbscissaPlan, step: number, intervals: number): Result<undefined> {
+  const factor = Math.abs(plan.factor.value);
+  const off = Math.abs(factor - Math.abs(step));
+  const rounding = (plan.first.rounding + plan.last.rounding) / intervals + plan.factor.rounding;
+  if (off <= 1.001 * rounding + 1e-6 * factor || off > 0.05 * factor) return ok(undefined);
+  return refuse(
+    'jcamp-axis',
+    `the factor of the abscissa is ${factor}, but FIRST, LAST and the number of points give a step of ${Number(step.toPrecision(9))}`,
+    { label: 'FACTOR' },
+  );
 }
 
 function coarseFlag(state: TableState, stepCount: number): Flag[] {

@@ -91,16 +91,14 @@ function compare(
   );
 }
 
-/** Never filled in, or the extremes of the other page, or those of all pages together. */
-function isForeign({ plan }: CheckedTable, tables: readonly CheckedTable[]): boolean {
-  const { min, max } = plan;
-  if (!min || !max) return false;
-  if (min.value === 0 && max.value === 0) return true;
-  const lowest = Math.min(...tables.map((table) => table.min));
-  const highest = Math.max(...tables.map((table) => table.max));
-  const others = tables.filter((table) => table.plan !== plan).map((table) => [table.min, table.max] as const);
-  return [...others, ...(others.length > 0 ? [[lowest, highest] as const] : [])].some(
-    ([low, high]) =>
-      Math.abs(low - min.value) <= min.roundingLoose * 1.001 && Math.abs(high - max.value) <= max.roundingLoose * 1.001,
-  );
+/** Not its own extremes, but never filled in, or those of the other page, or those of all pages together. */
+function isForeign({ plan, min, max }: CheckedTable, tables: readonly CheckedTable[]): boolean {
+  const { min: low, max: high } = plan;
+  if (!low || !high) return false;
+  const fits = (lowest: number, highest: number) =>
+    Math.abs(low.value - lowest) <= low.roundingLoose * 1.001 && Math.abs(high.value - highest) <= high.roundingLoose * 1.001;
+  if (fits(min, max)) return false;
+  if (low.value === 0 && high.value === 0) return true;
+  const together = fits(Math.min(...tables.map((table) => table.min)), Math.max(...tables.map((table) => table.max)));
+  return (together && tables.length > 1) || tables.some((table) => table.plan !== plan && fits(table.min, table.max));
 }

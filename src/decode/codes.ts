@@ -58,6 +58,7 @@ export const jcampCodes = [
   { code: 'jcamp-block-passed-over', kind: 'note', meaning: 'blocks without a spectrum (peaks, structures) were passed over' },
   { code: 'jcamp-decimal-comma', kind: 'note', meaning: 'a decimal comma in the header was read as a decimal point' },
   { code: 'jcamp-point-count-header', kind: 'note', meaning: 'NPOINTS is off by one; abscissae, DELTAX and table agree' },
+  { code: 'jcamp-last-abscissa', kind: 'note', meaning: 'LASTX lies one step beyond the last point' },
   { code: 'jcamp-abscissa-counts', kind: 'note', meaning: 'abscissae of the table only count the points' },
   { code: 'jcamp-abscissa-coarse', kind: 'note', meaning: 'abscissae are printed too coarsely to show a lost line' },
   { code: 'jcamp-delta-sign', kind: 'note', meaning: 'DELTAX has the wrong sign; FIRSTX and LASTX are used' },

@@ -37,7 +37,7 @@ export function decodeBlock(
   if (!tables.ok) return tables;
   const { real, imag, flags } = tables.value;
   const facts = factsOf(header, privateRecords);
-  const place = placeOf(layout.abscissa, real.length, observeMhz.value, facts.shiftReference, header);
+  const place = placeOf(tables.value.abscissa, real.length, observeMhz.value, facts.shiftReference, header);
   const time = acquiredOf(header);
   const acquisition: Omit<Acquisition, 'dataSha256'> = {
     kind: kind === 'fid' ? 'fid' : imag ? 'complex-spectrum' : 'real-spectrum',

@@ -48,7 +48,7 @@ export function readTableNumber(state: TableState, lead: number, mayHavePower: b
   state.at = at;
   decimalsOf.last = decimals;
   if (digits === 0) stop(state, 'jcamp-table-syntax', 'a sign or point without digits');
-  if (mayHavePower && (byte === upperE || byte === lowerE) && isSigned(state)) return readPower(state, start);
+  if (mayHavePower && startsPower(state)) return readPower(state, start);
   if (mantissa < exactMax && decimals <= 22) return decimals === 0 ? mantissa : mantissa / powers[decimals]!;
   return Number((lead < 0 ? '' : String(lead)) + textOf(state, start, at));
 }
@@ -56,7 +56,10 @@ export function readTableNumber(state: TableState, lead: number, mayHavePower: b
 /** Decimals of the number read last (a scratch value; the walk is not re-entrant). */
 export const decimalsOf = { last: 0 };
 
-function isSigned({ bytes, at, end }: TableState): boolean {
+/** Whether `E`, a sign and a digit stand at the current place. */
+export function startsPower({ bytes, at, end }: TableState): boolean {
+  const byte = bytes[at];
+  if (byte !== upperE && byte !== lowerE) return false;
   const sign = bytes[at + 1];
   const digit = bytes[at + 2] ?? 0;
   return at + 2 < end && (sign === 43 || sign === 45) && digit >= digitZero && digit <= digitNine;

@@ -5,14 +5,17 @@ import { checkCount } from './checkCount.js';
 import { checkOrdinates, extremesOf } from './checkOrdinates.js';
 import { compareDecoders, type WalkedTable } from './compareDecoders.js';
 import { refuse, tolerated } from './jcampProblem.js';
-import type { Layout } from './layout.js';
+import type { AbscissaPlan, Layout } from './layout.js';
 import { firstLineOf } from './recordText.js';
+import { settleLast } from './settleLast.js';
 import { walkTable } from './walkTable.js';
 
 /** Checked numbers of a block. */
 export interface Tables {
   readonly real: Float64Array;
   readonly imag?: Float64Array;
+  /** The abscissa that the table bears out. */
+  readonly abscissa: AbscissaPlan;
   readonly flags: readonly Flag[];
 }
 
@@ -36,7 +39,8 @@ export function readTables(bytes: Uint8Array, layout: Layout): Result<Tables> {
   if (!ordinates.ok) return ordinates;
   const agreed = compareDecoders(walked);
   if (!agreed.ok) return agreed;
-  return ok({ real: real!, ...(imag ? { imag } : {}), flags: [...flags, ...ordinates.value] });
+  const { abscissa } = settleLast(layout.abscissa, real!.length);
+  return ok({ real: real!, ...(imag ? { imag } : {}), abscissa, flags: distinct([...flags, ...ordinates.value]) });
 }
 
 function readTable(bytes: Uint8Array, layout: Layout, plan: Layout['tables'][number], flags: Flag[]): Result<WalkedTable> {
@@ -47,13 +51,20 @@ function readTable(bytes: Uint8Array, layout: Layout, plan: Layout['tables'][num
   const state = walk.value;
   if (state.count < 2)
     return refuse('jcamp-too-few-points', `the table at line ${record.line} holds ${state.count} points`, { line: record.line });
-  for (const checked of [checkCount(state, plan, layout.abscissa), checkAbscissa(state, layout.abscissa)]) {
-    if (!checked.ok) return checked;
-    flags.push(...checked.value);
-  }
+  const count = checkCount(state, plan, layout.abscissa);
+  if (!count.ok) return count;
+  const settled = settleLast(layout.abscissa, state.count);
+  const axis = checkAbscissa(state, settled.abscissa);
+  if (!axis.ok) return axis;
+  flags.push(...count.value, ...settled.flags, ...axis.value);
   if (state.endsInDifference)
     flags.push(tolerated('jcamp-final-check-missing', `the table at line ${record.line} ends without its last check ordinate`));
   const values = state.ordinates.subarray(0, state.count).map((value) => value * factor.value);
   const table = extremesOf(plan, values);
   return table.ok ? ok({ state, table: table.value, start }) : table;
+}
+
+/** Both pages share an axis: what is said of it is said once. */
+function distinct(flags: readonly Flag[]): Flag[] {
+  return flags.filter((flag, index) => flags.findIndex(({ message }) => message === flag.message) === index);
 }

@@ -1,7 +1,7 @@
 import { limits } from '../base/limits.js';
 import { ok, type Result } from '../base/result.js';
 import { shown } from './jcampProblem.js';
-import { decimalsOf, readTableNumber } from './readTableNumber.js';
+import { decimalsOf, readTableNumber, startsPower } from './readTableNumber.js';
 import { pushOrdinate, stop, type TableState } from './tableState.js';
 import { byteOf } from './walkRecords.js';
 
@@ -136,6 +136,8 @@ function readOrdinate(state: TableState, byte: number, of: number, pointsStated:
     takeValue(state, sign * readTableNumber(state, -1, true));
   } else if (of === kind.squeezed || of === kind.difference) {
     markPseudoDigit(state);
+    if (startsPower(state))
+      stop(state, 'jcamp-exponent-ambiguous', 'E with a sign after a pseudo-digit: a power of ten, or the digit 5?');
     const lead = leads[byte]!;
     state.at += 1;
     const magnitude = readTableNumber(state, lead < 0 ? -lead : lead, false);
