@@ -1,7 +1,8 @@
 import type { Term } from './regionModel.js';
 
 const gaussHeight = 2 * Math.sqrt(Math.LN2 / Math.PI);
-const lorentzHeight = 2 / Math.PI;
+/** Below this the ripple of a cut decay cannot be seen at any signal-to-noise. */
+const rippleMin = 1e-7;
 
 /** Columns that `addTerm` fills, each of shape (points): the unit-area shape and its derivatives. */
 export interface TermColumns {
@@ -25,6 +26,15 @@ export interface TermState {
   readonly couplings: readonly number[];
 }
 
+/** Where the points of a column lie. */
+export interface TermAxis {
+  /** Hz of the first point; falls by `stepHz` per point. */
+  readonly firstHz: number;
+  readonly stepHz: number;
+  /** Seconds after which the decay was cut; absent: it died out. */
+  readonly acquisitionS?: number;
+}
+
 /** Empty columns for a term. */
 export function termColumns(points: number, couplings: number): TermColumns {
   const column = () => new Float64Array(points);
@@ -39,55 +49,90 @@ export function termColumns(points: number, couplings: number): TermColumns {
 }
 
 /**
- * Writes a pattern of unit-area pseudo-Voigt lines and its analytic derivatives.
+ * Writes a pattern of unit-area lines and its analytic derivatives.
  *
- * Shape: cos(phase) x [s L + (1 - s) G] + sin(phase) x D, with G and L of equal full width and D the Lorentzian's dispersive
- * partner; a small share of dispersion stands for what the phase correction left.
+ * A line is the transform of a decay cut at T: S = 2 (1 - exp(-z T)) / z with z = pi W + 2 pi i (x - f); its real part is a
+ * Lorentzian of full width W with the ripple of the cut. The value is Re(exp(i phase) S), with a Gaussian of equal width mixed
+ * in by (1 - lorentzShare); a small phase stands for what the phase correction left.
  *
- * @param firstHz Hz of the first point; falls by `stepHz` per point
+ * @param axis    points, Hz
  * @param columns overwritten
- * @source  Lorentzian, Gaussian and their derivatives (textbook, checked against finite differences in the tests)
+ * @source  transform of an exponential decay (textbook); derivatives checked against finite differences in the tests
  */
-export function addTerm(term: Term, state: TermState, firstHz: number, stepHz: number, columns: TermColumns): void {
+export function addTerm(term: Term, state: TermState, axis: TermAxis, columns: TermColumns): void {
   const { value, byShift, byLogWidth, byPhase, byLorentzShare, byCoupling } = columns;
-  const points = value.length;
   for (const column of [value, byShift, byLogWidth, byPhase, byLorentzShare, ...byCoupling]) column.fill(0);
-  const { widthHz, lorentzShare } = state;
-  const cosine = Math.cos(state.phase);
-  const sine = Math.sin(state.phase);
-  const perWidth = 2 / widthHz;
-  const hasGauss = lorentzShare < 1 || state.isShareFree;
-  const lineShift = new Float64Array(points);
+  const lineShift = new Float64Array(value.length);
   for (const { offsetHz, share, perCoupling } of term.lines) {
     let place = state.shiftHz + offsetHz;
     for (let k = 0; k < perCoupling.length; k += 1) place += perCoupling[k]! * state.couplings[k]!;
-    const scale = share / widthHz;
-    for (let i = 0; i < points; i += 1) {
-      const u = (firstHz - i * stepHz - place) * perWidth;
-      const u2 = u * u;
-      const q = 1 / (1 + u2);
-      const lorentz = lorentzHeight * q;
-      const dispersion = lorentz * u;
-      const slope = lorentz * q;
-      // Lorentzian: value, d/dshift in units of perWidth, d/dlog width.
-      let absorption = lorentz;
-      let absorptionShift = 2 * u * slope;
-      let absorptionWidth = (u2 - 1) * slope;
-      if (hasGauss) {
-        const gauss = u2 < 60 ? gaussHeight * Math.exp(-Math.LN2 * u2) : 0;
-        byLorentzShare[i] = byLorentzShare[i]! + scale * cosine * (lorentz - gauss);
-        absorption = lorentzShare * absorption + (1 - lorentzShare) * gauss;
-        absorptionShift = lorentzShare * absorptionShift + (1 - lorentzShare) * gauss * 2 * Math.LN2 * u;
-        absorptionWidth = lorentzShare * absorptionWidth + (1 - lorentzShare) * gauss * (2 * Math.LN2 * u2 - 1);
-      }
-      value[i] = value[i]! + scale * (cosine * absorption + sine * dispersion);
-      lineShift[i] = scale * perWidth * (cosine * absorptionShift + sine * (u2 - 1) * slope);
-      byLogWidth[i] = byLogWidth[i]! + scale * (cosine * absorptionWidth - sine * 2 * u * slope);
-      byPhase[i] = byPhase[i]! + scale * (cosine * dispersion - sine * absorption);
-    }
+    addLine(place, share, state, axis, columns, lineShift);
     addScaled(byShift, lineShift, 1);
     for (let k = 0; k < perCoupling.length; k += 1) addScaled(byCoupling[k]!, lineShift, perCoupling[k]!);
   }
+}
+
+function addLine(place: number, share: number, state: TermState, axis: TermAxis, columns: TermColumns, lineShift: Float64Array) {
+  const { value, byLogWidth, byPhase, byLorentzShare } = columns;
+  const { widthHz, lorentzShare } = state;
+  const cosine = Math.cos(state.phase);
+  const sine = Math.sin(state.phase);
+  const decay = Math.PI * widthHz;
+  const ripple = rippleOf(place, widthHz, axis);
+  let { cutRe, cutIm } = ripple;
+  const hasGauss = lorentzShare < 1 || state.isShareFree;
+  const points = value.length;
+  for (let i = 0; i < points; i += 1) {
+    const offset = 2 * Math.PI * (axis.firstHz - i * axis.stepHz - place);
+    const norm = 2 / (decay * decay + offset * offset);
+    // P = 2 / z.
+    const pRe = decay * norm;
+    const pIm = -offset * norm;
+    // S = P (1 - Q); dS/dz = P T Q - P S / 2.
+    const sRe = pRe * (1 - cutRe) + pIm * cutIm;
+    const sIm = pIm * (1 - cutRe) - pRe * cutIm;
+    let zRe = -(pRe * sRe - pIm * sIm) / 2;
+    let zIm = -(pRe * sIm + pIm * sRe) / 2;
+    if (ripple.seconds > 0) {
+      zRe += ripple.seconds * (pRe * cutRe - pIm * cutIm);
+      zIm += ripple.seconds * (pRe * cutIm + pIm * cutRe);
+      const turned = cutRe * ripple.turnRe - cutIm * ripple.turnIm;
+      cutIm = cutRe * ripple.turnIm + cutIm * ripple.turnRe;
+      cutRe = turned;
+    }
+    let absorption = sRe;
+    let absorptionShift = 2 * Math.PI * zIm;
+    let absorptionWidth = decay * zRe;
+    if (hasGauss) {
+      const u = offset / decay;
+      const gauss = u * u < 60 ? (gaussHeight / widthHz) * Math.exp(-Math.LN2 * u * u) : 0;
+      byLorentzShare[i] = byLorentzShare[i]! + share * cosine * (sRe - gauss);
+      absorption = lorentzShare * sRe + (1 - lorentzShare) * gauss;
+      absorptionShift = lorentzShare * absorptionShift + ((1 - lorentzShare) * gauss * 4 * Math.LN2 * u) / widthHz;
+      absorptionWidth = lorentzShare * absorptionWidth + (1 - lorentzShare) * gauss * (2 * Math.LN2 * u * u - 1);
+    }
+    value[i] = value[i]! + share * (cosine * absorption - sine * sIm);
+    // dS/df = -2 pi i dS/dz.
+    lineShift[i] = share * (cosine * absorptionShift + sine * 2 * Math.PI * zRe);
+    byLogWidth[i] = byLogWidth[i]! + share * (cosine * absorptionWidth - sine * decay * zIm);
+    byPhase[i] = byPhase[i]! - share * (sine * absorption + cosine * sIm);
+  }
+}
+
+/** exp(-z T) at the first point, and its turn from one point to the next. */
+export function rippleOf(place: number, widthHz: number, axis: TermAxis) {
+  const seconds = axis.acquisitionS ?? 0;
+  const size = seconds > 0 ? Math.exp(-Math.PI * widthHz * seconds) : 0;
+  if (size < rippleMin) return { seconds: 0, cutRe: 0, cutIm: 0, turnRe: 1, turnIm: 0 };
+  const angle = -2 * Math.PI * (axis.firstHz - place) * seconds;
+  const turn = 2 * Math.PI * axis.stepHz * seconds;
+  return {
+    seconds,
+    cutRe: size * Math.cos(angle),
+    cutIm: size * Math.sin(angle),
+    turnRe: Math.cos(turn),
+    turnIm: Math.sin(turn),
+  };
 }
 
 function addScaled(target: Float64Array, source: Float64Array, factor: number): void {

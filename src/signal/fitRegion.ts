@@ -6,6 +6,7 @@ import { choleskyFactor, choleskyInverse, choleskySolve } from './solveSymmetric
 const stepsMax = 40;
 /** In units of chi-square: far below what one standard uncertainty changes (1). */
 const costTolerance = 2e-3;
+const relativeTolerance = 1e-6;
 
 type Evaluation = ReturnType<typeof normalEquations>;
 
@@ -32,7 +33,7 @@ export function fitRegion(window: RegionWindow, model: RegionModel): RegionFit {
       values = next;
       current = trial;
       damping = Math.max(damping / 8, 1e-9);
-      if (gain < costTolerance) break;
+      if (gain < costTolerance + relativeTolerance * trial.cost) break;
     } else {
       if (gain > -costTolerance * 1e-3 || damping > 1e8) break;
       damping *= 6;
@@ -42,7 +43,7 @@ export function fitRegion(window: RegionWindow, model: RegionModel): RegionFit {
 }
 
 function evaluate(window: RegionWindow, model: RegionModel, values: Float64Array, free: readonly number[]): Evaluation {
-  const { firstHz, stepHz, data } = window;
+  const { data } = window;
   const shapes = model.terms.map((term) => {
     const own = termColumns(data.length, term.couplings.length);
     let logWidth = 0;
@@ -55,7 +56,7 @@ function evaluate(window: RegionWindow, model: RegionModel, values: Float64Array
       isShareFree: model.parameters[model.lorentzShare]!.sigma > 0,
       couplings: term.couplings.map((index) => values[index]!),
     };
-    addTerm(term, state, firstHz, stepHz, own);
+    addTerm(term, state, window, own);
     return own;
   });
   return normalEquations(window, model, shapes, values, free);

@@ -16,7 +16,7 @@ export interface FittedRegion {
 }
 
 /**
- * Fits every region, strongest first, taking the tails of those already fitted off the others; a second sweep lets the first
+ * Fits every region, strongest first, taking the tails of those already fitted off the others; further sweeps let the first
  * ones see the tails of the last.
  *
  * @param shape the line shape shared by the spectrum
@@ -35,7 +35,7 @@ export function fitRegions(
     .sort((a, b) => b.gain - a.gain || a.index - b.index)
     .map(({ index }) => index);
   const fitted: (FittedRegion | undefined)[] = regions.map(() => undefined);
-  for (let sweep = 0; sweep < 2; sweep += 1) {
+  for (let sweep = 0; sweep < 3; sweep += 1) {
     for (const index of order) {
       const region = regions[index]!;
       const others = fitted.filter((other, k): other is FittedRegion => k !== index && other !== undefined);
@@ -55,11 +55,11 @@ function restart(fit: RegionFit) {
   return { ...fit.model, parameters: fit.model.parameters.map((parameter, k) => ({ ...parameter, start: fit.values[k]! })) };
 }
 
-/** Whether the tails to take off changed by more than a tenth of the noise anywhere. */
+/** Whether the tails to take off changed by more than a fiftieth of the noise anywhere. */
 function differ(window: RegionWindow, spectrum: Spectrum, outside: Float64Array): boolean {
   for (let i = 0; i < window.data.length; i += 1) {
     const before = spectrum.real[window.from + i]! - window.data[i]!;
-    if (Math.abs(before - outside[i]!) > 0.1 * window.noise) return true;
+    if (Math.abs(before - outside[i]!) > 0.02 * window.noise) return true;
   }
   return false;
 }

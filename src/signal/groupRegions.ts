@@ -37,8 +37,8 @@ export function groupRegions(
       return {
         target,
         widthHz,
-        high: place.shiftHz + target.lines[0]!.offsetHz,
-        low: place.shiftHz + target.lines.at(-1)!.offsetHz,
+        high: place.shiftHz + target.spanHz[1],
+        low: place.shiftHz + target.spanHz[0],
       };
     })
     .sort((a, b) => b.high - a.high || (a.target.key < b.target.key ? -1 : 1));

@@ -60,14 +60,15 @@ function bestPlace(spectrum: Spectrum, left: Float64Array, target: Target, width
   const firstHz = firstPpm * observeMhz;
   const centre = signal.shiftPpm * observeMhz;
   const reach = signal.withinPpm * observeMhz;
-  const high = centre + reach + lines[0]!.offsetHz;
-  const low = centre - reach + lines.at(-1)!.offsetHz;
+  const high = centre + reach + target.spanHz[1];
+  const low = centre - reach + target.spanHz[0];
   const from = Math.max(0, Math.floor((firstHz - high) / stepHz) - 1);
   const to = Math.min(left.length, Math.ceil((firstHz - low) / stepHz) + 2);
   const none = { shiftHz: centre, gain: 0, area: 0 };
   if (to - from < 3) return none;
   const { filtered, energy } = matched(left, from, to, width, stepHz);
-  const shares = lines.reduce((sum, { share }) => sum + share * share, 0);
+  const expected = expectedResponses(lines, width, stepHz);
+  const shares = expected.reduce((sum, value) => sum + value * value, 0);
   let best: Place & { score: number } = { ...none, score: 0 };
   const step = Math.max(1, Math.floor(width / (5 * stepHz)));
   const start = Math.max(0, Math.ceil((firstHz - (centre + reach)) / stepHz));
@@ -75,12 +76,14 @@ function bestPlace(spectrum: Spectrum, left: Float64Array, target: Target, width
   for (let index = start; index <= end; index += step) {
     const shiftHz = firstHz - index * stepHz;
     let area = 0;
-    for (const { offsetHz, share } of lines) area += share * (filtered[Math.round(index - offsetHz / stepHz) - from] ?? 0);
+    for (const [k, { offsetHz }] of lines.entries()) {
+      area += expected[k]! * (filtered[Math.round(index - offsetHz / stepHz) - from] ?? 0);
+    }
     area /= shares;
     if (area <= 0) continue;
     let misfit = 0;
-    for (const { offsetHz, share } of lines) {
-      misfit += ((filtered[Math.round(index - offsetHz / stepHz) - from] ?? 0) - share * area) ** 2;
+    for (const [k, { offsetHz }] of lines.entries()) {
+      misfit += ((filtered[Math.round(index - offsetHz / stepHz) - from] ?? 0) - expected[k]! * area) ** 2;
     }
     const gain = ((area * area * shares - misfit) * energy) / (noise * noise);
     const off = (shiftHz - centre) / reach;
@@ -88,6 +91,22 @@ function bestPlace(spectrum: Spectrum, left: Float64Array, target: Target, width
     if (score > best.score) best = { shiftHz, gain, area, score };
   }
   return best;
+}
+
+/** What the matched filter answers at each line of a pattern of unit area: its own share and what neighbours add. */
+function expectedResponses(lines: Target['lines'], widthHz: number, stepHz: number): number[] {
+  const pattern = new Float64Array(
+    Math.ceil((lines[0]!.offsetHz - lines.at(-1)!.offsetHz + 2 * kernelWidths * widthHz) / stepHz) + 3,
+  );
+  const firstHz = lines[0]!.offsetHz + kernelWidths * widthHz;
+  for (const { offsetHz, share } of lines) {
+    for (let i = 0; i < pattern.length; i += 1) {
+      const u = (2 * (firstHz - i * stepHz - offsetHz)) / widthHz;
+      pattern[i] = pattern[i]! + (2 * share) / (Math.PI * widthHz * (1 + u * u));
+    }
+  }
+  const { filtered } = matched(pattern, 0, pattern.length, widthHz, stepHz);
+  return lines.map(({ offsetHz }) => filtered[Math.round((firstHz - offsetHz) / stepHz)]!);
 }
 
 /** Least-squares area of one Lorentzian at every point, and the energy of the kernel. */
@@ -129,7 +148,7 @@ function overlapping(targets: readonly Target[], observeMhz: number, widthHz: nu
       const { shiftPpm, withinPpm } = target.signal;
       const reach = withinPpm * observeMhz + 2 * widthHz;
       const centre = shiftPpm * observeMhz;
-      return { target, low: centre - reach + target.lines.at(-1)!.offsetHz, high: centre + reach + target.lines[0]!.offsetHz };
+      return { target, low: centre - reach + target.spanHz[0], high: centre + reach + target.spanHz[1] };
     })
     .sort((a, b) => b.high - a.high);
   const groups: Target[][] = [];

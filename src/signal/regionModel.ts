@@ -37,6 +37,8 @@ export interface RegionWindow {
   /** Hz of the first point on the region's own axis; falls by `stepHz` per point. */
   readonly firstHz: number;
   readonly stepHz: number;
+  /** Seconds after which the decay was cut; absent: not known, or it died out. */
+  readonly acquisitionS?: number;
   /** shape (to - from): data less what other regions explain. */
   readonly data: Float64Array;
   readonly noise: number;

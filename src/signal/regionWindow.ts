@@ -25,6 +25,7 @@ export function regionWindow(
     to,
     firstHz: spectrum.firstPpm * spectrum.observeMhz - from * spectrum.stepHz,
     stepHz: spectrum.stepHz,
+    ...(spectrum.acquisitionS !== undefined ? { acquisitionS: spectrum.acquisitionS } : {}),
     data,
     noise: Math.max(spectrum.noise, Number.MIN_VALUE),
     filter: whitening.filter,

@@ -65,7 +65,8 @@ function lineTemplate(window: RegionWindow, fit: RegionFit, widthHz: number, rea
   const term = { key: '', lines: [{ offsetHz: 0, share: 1, perCoupling: [] }], shift: 0, widths: [], phase: 0, couplings: [] };
   const lorentzShare = fit.values[fit.model.lorentzShare]!;
   const state = { shiftHz: 0, widthHz, phase: 0, lorentzShare, isShareFree: false, couplings: [] };
-  addTerm(term, state, (reach + order) * window.stepHz, window.stepHz, columns);
+  // The ripple of the cut depends on the exact place and is left out of a template that moves.
+  addTerm(term, state, { firstHz: (reach + order) * window.stepHz, stepHz: window.stepHz }, columns);
   return whitenColumn(columns.value, window.filter, 1 / window.noise);
 }
 

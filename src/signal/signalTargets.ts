@@ -10,9 +10,14 @@ export interface Target {
   readonly signal: MethodSignal;
   /** Empty when the method declares no lines (`m`). */
   readonly lines: readonly TermLine[];
+  /** Offsets of the outermost lines that show, Hz: [lowest, highest]; faint combination lines may lie far outside. */
+  readonly spanHz: readonly [number, number];
   /** Listed couplings, Hz, in the order of `perCoupling`. */
   readonly couplingsHz: readonly number[];
 }
+
+/** Lines below this share of the tallest are drawn but do not widen a window. */
+const faintShare = 0.01;
 
 const remembered = new WeakMap<MethodSpecies, Map<number, ReadonlyMap<string, readonly Line[]>>>();
 
@@ -29,11 +34,13 @@ export function signalTargets(method: Method, observeMhz: number): Target[] {
     const lines = linesOf(species, observeMhz);
     return species.signals.map((signal) => {
       const couplingsHz = declaredCouplings(signal.pattern);
+      const own = lines.get(signal.id) ?? [];
       return {
         key: signal.key,
         species,
         signal,
-        lines: withCouplings(lines.get(signal.id) ?? [], signal.pattern, couplingsHz),
+        lines: withCouplings(own, signal.pattern, couplingsHz),
+        spanHz: spanOf(own),
         couplingsHz,
       };
     });
@@ -48,6 +55,12 @@ function linesOf(species: MethodSpecies, observeMhz: number): ReadonlyMap<string
   const lines = expectedLines(species, observeMhz);
   byField.set(observeMhz, lines);
   return lines;
+}
+
+function spanOf(lines: readonly Line[]): readonly [number, number] {
+  const tallest = Math.max(...lines.map(({ share }) => share));
+  const shown = lines.filter(({ share }) => share > faintShare * tallest).map(({ offsetHz }) => offsetHz);
+  return lines.length === 0 ? [0, 0] : [Math.min(...shown), Math.max(...shown)];
 }
 
 /** Couplings when every splitting gives one; otherwise none, because then the offsets cannot be told apart. */

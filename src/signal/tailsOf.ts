@@ -1,4 +1,5 @@
 import type { Spectrum } from '../spectrum/spectrum.js';
+import { addLineValue, type PlacedLine } from './addLineValue.js';
 import type { FittedRegion } from './fitRegions.js';
 import type { RegionFit } from './regionModel.js';
 
@@ -6,7 +7,7 @@ import type { RegionFit } from './regionModel.js';
  * What the lines of fitted regions add at the points of a window, far tails included.
  *
  * @returns shape (to - from), units of the data
- * @source  Lorentzian with its dispersive share (see `addTerm`); the Gaussian part has no tail and is drawn as it is
+ * @source  see `addTerm`
  */
 export function tailsOf(
   spectrum: Spectrum,
@@ -14,19 +15,19 @@ export function tailsOf(
   to: number,
   others: readonly Pick<FittedRegion, 'fit'>[],
 ): Float64Array {
+  const { firstPpm, observeMhz, stepHz, acquisitionS } = spectrum;
   const sum = new Float64Array(to - from);
-  const firstHz = spectrum.firstPpm * spectrum.observeMhz - from * spectrum.stepHz;
-  for (const { fit } of others) for (const line of linesOfFit(fit)) addLine(sum, line, firstHz, spectrum.stepHz);
+  const axis = {
+    firstHz: firstPpm * observeMhz - from * stepHz,
+    stepHz,
+    ...(acquisitionS !== undefined ? { acquisitionS } : {}),
+  };
+  for (const { fit } of others) for (const line of linesOfFit(fit)) addLineValue(sum, line, axis);
   return sum;
 }
 
-export interface FittedLine {
+export interface FittedLine extends PlacedLine {
   readonly key: string;
-  readonly shiftHz: number;
-  readonly area: number;
-  readonly widthHz: number;
-  readonly phase: number;
-  readonly lorentzShare: number;
 }
 
 /** Every line of a fit, as placed. */
@@ -40,18 +41,4 @@ export function linesOfFit(fit: RegionFit): FittedLine[] {
       return { ...shared, shiftHz: values[term.shift]! + offsetHz + moved, area: areas[t]! * share };
     });
   });
-}
-
-function addLine(sum: Float64Array, line: FittedLine, firstHz: number, stepHz: number): void {
-  const perWidth = 2 / line.widthHz;
-  const scale = (2 * line.area) / (Math.PI * line.widthHz);
-  const gauss = (2 * line.area * Math.sqrt(Math.LN2 / Math.PI)) / line.widthHz;
-  const cosine = Math.cos(line.phase);
-  const sine = Math.sin(line.phase);
-  for (let i = 0; i < sum.length; i += 1) {
-    const u = (firstHz - i * stepHz - line.shiftHz) * perWidth;
-    const q = scale / (1 + u * u);
-    const bell = line.lorentzShare < 1 && u * u < 60 ? (1 - line.lorentzShare) * gauss * Math.exp(-Math.LN2 * u * u) : 0;
-    sum[i] = sum[i]! + cosine * (line.lorentzShare * q + bell) + sine * q * u;
-  }
 }

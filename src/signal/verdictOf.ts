@@ -70,15 +70,19 @@ function misfitOf(fitted: FittedRegion, target: Target): number {
   const own = linesOfFit(fit).filter((line) => line.key === target.key);
   let excess = 0;
   let power = 0;
+  let count = 0;
   for (const line of own) {
     const reach = 2 * line.widthHz;
     const from = Math.max(0, Math.floor((window.firstHz - line.shiftHz - reach) / window.stepHz));
     const to = Math.min(window.data.length, Math.ceil((window.firstHz - line.shiftHz + reach) / window.stepHz));
     for (let i = from; i < to; i += 1) {
       excess += fit.residual[i]! ** 2 - window.noise ** 2;
+      count += 1;
       power += (fit.fit[i]! - fit.level) ** 2;
     }
   }
+  // The sum scatters by sigma^2 sqrt(2 n) by itself.
+  if (excess < 5 * window.noise ** 2 * Math.sqrt(2 * count)) return 0;
   return power > 0 ? Math.sqrt(Math.max(0, excess) / power) : 0;
 }
 

@@ -31,6 +31,11 @@ export interface Spectrum {
   readonly noiseCorrelation: Float64Array;
   /** Standard uncertainty of the local baseline level, same units as `real`; adds to area uncertainty as u x width. */
   readonly baselineU: number;
+  /**
+   * FID input: seconds of signal behind the spectrum (recorded points after the onset x dwell, before zero filling). A line that has
+   * not died out by then carries the ripple of the cut, which the fit models. Absent when not known.
+   */
+  readonly acquisitionS?: number;
   readonly reference: ReferenceResult;
   readonly quality: {
     readonly phaseDeg: readonly [number, number];
