@@ -11,6 +11,8 @@ const patternTextMax = 80;
 const letterByForm = new Map(splittingLetters.flatMap((letter) => writtenForms[letter].map((form) => [form, letter] as const)));
 /** Longest first, so that `sept` is not read as `s` and something else. */
 const forms = [...letterByForm.keys(), 'm', 'mult', 'multiplet'].sort((a, b) => b.length - a.length || (a < b ? -1 : 1));
+/** Only these stand side by side in one word (`dquint`); `triplett` is a slip, not a triplet of triplets. */
+const joinable = forms.filter((form) => form.length <= 2 || /^(?:qui|quin|quint|pent|sext|sept|hept|oct|non)$/.test(form));
 const isMultipletForm = (form: string) => form === 'm' || form === 'mult' || form === 'multiplet';
 
 interface Words {
@@ -76,16 +78,17 @@ function readWords(text: string): Words | undefined {
   return valid ? { letters, isBroad, isMultiplet: multiplets > 0 } : undefined;
 }
 
-/** `dquint` is `d` and `quint`; a plural (`doublets`) is its singular. Backtracks, so `sexts` or `ts` cannot mislead it. */
+/** `doublets` is a word, `dquint` is `d` and `quint`. Backtracks, so that `sexts` or `ts` cannot mislead it. */
 function splitToken(token: string): string[] | undefined {
+  const word = token.length > 5 && token.endsWith('s') ? token.slice(0, -1) : token;
+  return forms.includes(word) ? [word] : splitJoined(token);
+}
+
+function splitJoined(token: string): string[] | undefined {
   if (token === '') return [];
-  for (const form of forms) {
-    if (!token.startsWith(form)) continue;
-    const rests = form.length > 4 && token[form.length] === 's' ? [token.slice(form.length + 1)] : [];
-    for (const rest of [...rests, token.slice(form.length)]) {
-      const tail = splitToken(rest);
-      if (tail !== undefined) return [form, ...tail];
-    }
+  for (const form of joinable) {
+    const tail = token.startsWith(form) ? splitJoined(token.slice(form.length)) : undefined;
+    if (tail !== undefined) return [form, ...tail];
   }
   return undefined;
 }

@@ -73,10 +73,24 @@ describe('parsePattern', () => {
     ['\u03c8t', 't'],
   ])('reads %j as %s', (written, text) => expect(textOf(written)).toBe(text));
 
-  it.each(['', 'x', 'sd', 'ss', 'mm', 'H', 'NH', 'Q', 'dddddddd', 'of', 'd8', 'h', 'constructor', 'd'.repeat(200)])(
-    'refuses %j',
-    (written) => expect(textOf(written)).toBe('pattern-unreadable'),
-  );
+  it.each([
+    '',
+    'x',
+    'sd',
+    'ss',
+    'mm',
+    'H',
+    'NH',
+    'Q',
+    'dddddddd',
+    'of',
+    'd8',
+    'h',
+    'constructor',
+    'triplett',
+    'dtriplet',
+    'd'.repeat(200),
+  ])('refuses %j', (written) => expect(textOf(written)).toBe('pattern-unreadable'));
 
   it('gives the couplings to the splittings in the written order, with the neighbours of each letter', () => {
     const parsed = parsePattern('dqt', [15.5, 7, 1.7]);
