@@ -9,8 +9,8 @@ export interface Region {
   readonly to: number;
 }
 
-/** Points up to this many line widths beside the outermost lines are fitted: the tails beyond hold 2.6 % of a Lorentzian each side. */
-const marginWidths = 12;
+/** Points up to this many line widths beside the outermost lines are fitted: the tails beyond hold 0.8 % of a Lorentzian each side. */
+const marginWidths = 20;
 /** Signals whose lines come closer than this share their tails so much that they are fitted together. */
 const joinWidths = 14;
 

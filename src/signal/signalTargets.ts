@@ -1,5 +1,6 @@
 import { expectedLines } from '../method/expectedLines.js';
 import type { Method, MethodSignal, MethodSpecies } from '../method/method.js';
+import { pascalRow } from '../pattern/firstOrderLines.js';
 import type { Line, Pattern } from '../pattern/pattern.js';
 import type { TermLine } from './regionModel.js';
 
@@ -69,27 +70,49 @@ function declaredCouplings(pattern: Pattern): number[] {
   return couplings.length === pattern.splittings.length ? couplings : [];
 }
 
+/** Levels this close to a line all belong to it. */
+const sameHz = 0.05;
+
 /**
- * Says how each line moves when a listed coupling changes: as the nearest first-order line does, whose offset is
- * sum m(k) J(k). Near strong coupling this is rough, which is enough for corrections of a tenth of a hertz.
+ * Says how each line moves when a listed coupling changes: as the first-order line there does, whose offset is sum m(k) J(k).
+ * A first-order pattern is taken apart into all its lines, so that lines which coincide by chance may part. Near strong
+ * coupling the motion is rough, which is enough for corrections of a tenth of a hertz.
  *
  * @param lines shape (n), Hz from the signal's shift
  */
 export function withCouplings(lines: readonly Line[], pattern: Pattern, couplingsHz: readonly number[]): TermLine[] {
   if (couplingsHz.length === 0) return lines.map((line) => ({ ...line, perCoupling: [] }));
-  let levels: { offsetHz: number; m: number[] }[] = [{ offsetHz: 0, m: [] }];
+  const levels = levelsOf(pattern, couplingsHz);
+  const own = lines.map((line) => {
+    const near = levels.filter(({ offsetHz }) => Math.abs(offsetHz - line.offsetHz) < sameHz);
+    const chosen = near.length > 0 ? near : [nearest(levels, line.offsetHz)];
+    const weight = chosen.reduce((sum, { share }) => sum + share, 0);
+    const perCoupling = couplingsHz.map(
+      (_, k) => chosen.reduce((sum, level) => sum + level.share * level.perCoupling[k]!, 0) / weight,
+    );
+    return { line: { ...line, perCoupling }, isFirstOrder: near.length > 0 && Math.abs(weight - line.share) < 1e-3 };
+  });
+  const isFirstOrder = own.every((one) => one.isFirstOrder) && lines.length > 0;
+  return isFirstOrder ? levels.sort((a, b) => b.offsetHz - a.offsetHz) : own.map(({ line }) => line);
+}
+
+function levelsOf(pattern: Pattern, couplingsHz: readonly number[]): TermLine[] {
+  let levels: TermLine[] = [{ offsetHz: 0, share: 1, perCoupling: [] }];
   pattern.splittings.forEach(({ neighbours }, k) => {
-    levels = levels.flatMap(({ offsetHz, m }) =>
-      Array.from({ length: neighbours + 1 }, (_, step) => {
-        const own = neighbours / 2 - step;
-        return { offsetHz: offsetHz + own * couplingsHz[k]!, m: [...m, own] };
+    const row = pascalRow(neighbours);
+    const total = 2 ** neighbours;
+    levels = levels.flatMap(({ offsetHz, share, perCoupling }) =>
+      row.map((weight, step) => {
+        const m = neighbours / 2 - step;
+        return { offsetHz: offsetHz + m * couplingsHz[k]!, share: (share * weight) / total, perCoupling: [...perCoupling, m] };
       }),
     );
   });
-  return lines.map((line) => {
-    const near = levels.reduce((best, level) =>
-      Math.abs(level.offsetHz - line.offsetHz) < Math.abs(best.offsetHz - line.offsetHz) ? level : best,
-    );
-    return { ...line, perCoupling: near.m };
-  });
+  return levels;
+}
+
+function nearest(levels: readonly TermLine[], offsetHz: number): TermLine {
+  return levels.reduce((best, level) =>
+    Math.abs(level.offsetHz - offsetHz) < Math.abs(best.offsetHz - offsetHz) ? level : best,
+  );
 }

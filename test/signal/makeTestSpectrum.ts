@@ -66,7 +66,7 @@ export function makeTestSpectrum(lines: readonly FidLine[], settings: TestSpectr
     stepHz,
     noise: 2 * (settings.noise ?? 1e-9),
     noiseCorrelation: correlation,
-    baselineU: 0.02 * (settings.noise ?? 1e-9),
+    baselineU: 0.06 * (settings.noise ?? 1e-9),
     acquisitionS: points * dwellS,
     reference: settings.referenceWidthHz === undefined ? reference : { ...reference, widthHz: settings.referenceWidthHz },
     quality: { phaseDeg: [0, 0] },
