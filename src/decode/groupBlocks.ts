@@ -66,7 +66,7 @@ function closeUnfinished(open: JcampBlock[], next: JcampRecord): void {
 }
 
 function markTruncated(open: readonly JcampBlock[], records: readonly JcampRecord[]): void {
-  for (const block of open) {
+  for (const block of [...open].reverse()) {
     if (block.isLink && block.inner.some(({ problem }) => problem)) continue;
     const last = records.at(-1)!;
     const message = `the text ends in ##${last.writtenLabel}= (line ${last.line}) without ##END=: half written or cut off`;

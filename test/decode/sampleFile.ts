@@ -62,10 +62,10 @@ export function single(decoded: Result<readonly Result<Acquisition>[]>): Result<
 }
 
 export function decoded(text: string): Acquisition {
-  return valueOf(decodeText(text));
+  return unwrap(decodeText(text));
 }
 
-export function valueOf<T>(result: Result<T>): T {
+export function unwrap<T>(result: Result<T>): T {
   if (!result.ok) throw new Error(`${result.problem.code}: ${result.problem.message}`);
   return result.value;
 }

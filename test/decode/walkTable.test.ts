@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { walkTable } from '../../src/decode/walkTable.js';
-import { bytesOf, problemOf, valueOf } from './sampleFile.js';
+import { bytesOf, problemOf, unwrap } from './sampleFile.js';
 
 function walk(lines: string, pointsStated = 100) {
   const bytes = bytesOf(lines);
@@ -8,7 +8,7 @@ function walk(lines: string, pointsStated = 100) {
 }
 
 function ordinates(lines: string, pointsStated = 100): number[] {
-  const { ordinates: all, count } = valueOf(walk(lines, pointsStated));
+  const { ordinates: all, count } = unwrap(walk(lines, pointsStated));
   return [...all.subarray(0, count)];
 }
 
@@ -47,7 +47,7 @@ describe('walkTable', () => {
   });
 
   it('notes where each line starts: the check ordinate repeats a point', () => {
-    const { lineStarts, endsInDifference } = valueOf(walk(tableSixDifdup('311', '363')));
+    const { lineStarts, endsInDifference } = unwrap(walk(tableSixDifdup('311', '363')));
     expect(lineStarts.map(({ abscissa, pointIndex, line }) => [abscissa, pointIndex, line])).toEqual([
       [311, 0, 1],
       [363, 52, 2],
@@ -94,7 +94,12 @@ describe('walkTable', () => {
 
   it('reads decimals and powers of ten as the nearest double', () => {
     expect(ordinates('0 0.000307130 -0.1 1.5E+03 2.5e-07 .5 12345678901234567890.5')).toEqual([
-      0.00030713, -0.1, 1500, 2.5e-7, 0.5, 12345678901234567890.5,
+      0.00030713,
+      -0.1,
+      1500,
+      2.5e-7,
+      0.5,
+      Number('12345678901234567890.5'),
     ]);
     expect(ordinates('1.0E+03 7 8')).toEqual([7, 8]);
   });
