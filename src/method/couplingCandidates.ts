@@ -95,7 +95,10 @@ function optionsOf(signals: readonly MethodSignal[], a: number, b: number, coupl
   const nucleiA = signals[a]!.nuclei;
   const nucleiB = signals[b]!.nuclei;
   const options: Option[] = [];
-  for (let sets = 1; sets <= Math.min(nucleiA, nucleiB); sets++) {
+  // Cross couplings are between sets, so whoever gives them says that there are some, even where the listing is a multiplet.
+  const isDivided = [signals[a]!, signals[b]!].some(({ crossCouplingsHz }) => (crossCouplingsHz ?? []).length > 0);
+  const fewest = isDivided && nucleiA % 2 === 0 && nucleiB % 2 === 0 ? 2 : 1;
+  for (let sets = fewest; sets <= Math.min(nucleiA, nucleiB); sets++) {
     if (nucleiA % sets !== 0 || nucleiB % sets !== 0) continue;
     for (const { splitting: onA, capacity: roomA } of left) {
       for (const { splitting: onB, capacity: roomB } of right) {
