@@ -4,14 +4,14 @@ import { shown, tolerated } from './jcampProblem.js';
 import { type HeaderTime, parseDate } from './parseDate.js';
 
 /**
- * Finds the time of acquisition: LONGDATE, else DATE with TIME, else DATE alone.
+ * Finds the time of acquisition: LONGDATE, else DATE with TIME, else DATE alone. A time within the date comes before TIME.
  *
  * A date that cannot be read for certain is flagged and left out; it is never guessed.
  */
 export function acquiredOf(header: Header): { acquired?: string; acquiredSource: AcquiredSource } {
-  const long = readTime(header, 'LONGDATE', headerText(header, 'LONGDATE'));
-  if (long) return stated(header, long, long.hasTime ? 'long-date' : 'date-only');
   const time = headerText(header, 'TIME');
+  const long = readTime(header, 'LONGDATE', headerText(header, 'LONGDATE'), time);
+  if (long) return stated(header, long, long.hasTime ? 'long-date' : 'date-only');
   const short = readTime(header, 'DATE', headerText(header, 'DATE'), time);
   if (short) return stated(header, short, short.hasTime ? 'date-and-time' : 'date-only');
   return { acquiredSource: 'none' };

@@ -28,6 +28,8 @@ export function checkAbscissa(state: TableState, plan: AbscissaPlan): Result<Fla
   const factor = plan.factor.value;
   if (spanValue === 0 || factor === 0)
     return refuse('jcamp-axis', `the abscissa runs from ${plan.first.value} to ${plan.last.value} by factor ${factor}: no axis`);
+  if (plan.unit === 's' && step < 0)
+    return refuse('jcamp-axis', `time runs backwards, from ${plan.first.value} to ${plan.last.value}`, { label: 'LAST' });
   const delta = checkDelta(plan, step);
   if (!delta.ok) return delta;
   const spacing = checkFactor(plan, step, intervals);

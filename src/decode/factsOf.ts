@@ -81,7 +81,7 @@ function modeOf(header: Header): Acquisition['acquisitionMode'] {
   return text.startsWith('SINGLE') ? 'single' : undefined;
 }
 
-/** `INTERNAL, CDCl3, 1, 15.47`: place, compound, 1-based point, shift. */
+/** `INTERNAL, CDCl3, 1, 15.47`: place, compound (may hold commas, as in names), 1-based point, shift. */
 function shiftReferenceOf(header: Header): ShiftReference | undefined {
   const text = headerText(header, '.SHIFTREFERENCE');
   if (text === undefined) return undefined;
@@ -89,9 +89,11 @@ function shiftReferenceOf(header: Header): ShiftReference | undefined {
     .replace(/^\(|\)$/g, '')
     .split(',')
     .map((word) => word.trim());
-  const [place = '', compound = '', point = '', shift = ''] = words;
+  const [place = '', ...rest] = words;
+  const [point = '', shift = ''] = rest.splice(-2);
+  const compound = rest.join(',');
   const [pointNumber, shiftPpm] = [parseNumber(point), parseNumber(shift)];
-  if (words.length !== 4 || typeof pointNumber === 'string' || typeof shiftPpm === 'string') {
+  if (words.length < 4 || typeof pointNumber === 'string' || typeof shiftPpm === 'string') {
     header.flags.push(tolerated('jcamp-value-unreadable', `##.SHIFT REFERENCE= "${shown(text)}" is not understood; passed over`));
     return undefined;
   }

@@ -29,6 +29,7 @@ export function groupBlocks(bytes: Uint8Array, records: readonly JcampRecord[]):
   let blockCount = 0;
   for (const record of records) {
     const current = open.at(-1);
+    if (record.problem && current) current.problem ??= record.problem;
     if (record.label === 'TITLE') {
       if (current && !current.isLink) closeUnfinished(open, record);
       blockCount += 1;
@@ -62,7 +63,7 @@ function isLinkType(bytes: Uint8Array, record: JcampRecord): boolean {
 function closeUnfinished(open: JcampBlock[], next: JcampRecord): void {
   const block = open.pop()!;
   const message = `the next block starts at line ${next.line} before ##END= of this one: part of it is missing`;
-  block.problem = problemOf(refuse('jcamp-block-not-closed', message, { line: next.line, label: 'TITLE' }));
+  block.problem ??= problemOf(refuse('jcamp-block-not-closed', message, { line: next.line, label: 'TITLE' }));
 }
 
 function markTruncated(open: readonly JcampBlock[], records: readonly JcampRecord[]): void {
@@ -70,7 +71,7 @@ function markTruncated(open: readonly JcampBlock[], records: readonly JcampRecor
     if (block.isLink && block.inner.some(({ problem }) => problem)) continue;
     const last = records.at(-1)!;
     const message = `the text ends in ##${last.writtenLabel}= (line ${last.line}) without ##END=: half written or cut off`;
-    block.problem = problemOf(refuse('jcamp-truncated', message, { line: last.line, label: last.writtenLabel }));
+    block.problem ??= problemOf(refuse('jcamp-truncated', message, { line: last.line, label: last.writtenLabel }));
   }
 }
 

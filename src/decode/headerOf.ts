@@ -86,7 +86,6 @@ export function numberOf(header: Header, record: JcampRecord, text: string): Res
       'jcamp-comma-ambiguous',
       `##${record.writtenLabel}= (line ${record.line}) holds "${shown(text)}": a decimal comma or a thousands separator?`,
       where,
-      'Export the file with decimal points.',
     );
   if (number.hasComma)
     header.flags.push(

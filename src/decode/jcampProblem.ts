@@ -8,13 +8,35 @@ export interface JcampPlace {
   readonly label?: string;
 }
 
+const damagedHint = 'Copy or export the file again; if it stays so, the original is damaged.';
+const hints: ReadonlyMap<string, string> = new Map([
+  ['jcamp-truncated', 'Wait until the file is written to its end, or copy it again.'],
+  ['jcamp-empty', 'Wait until the file is written, or copy it again.'],
+  ['jcamp-not-text', 'Export the spectrum as JCAMP-DX, as plain text.'],
+  ['jcamp-no-records', 'Export the spectrum as JCAMP-DX.'],
+  ['jcamp-unsupported', 'Export the one-dimensional FID or spectrum as JCAMP-DX 5.01.'],
+  ['jcamp-comma-ambiguous', 'Export the file with decimal points.'],
+  ['jcamp-table-comma', 'Export the file with decimal points.'],
+  ...[
+    'block-not-closed',
+    'structure',
+    'check-ordinate',
+    'point-count',
+    'abscissa',
+    'repeat-limit',
+    'table-character',
+    'table-syntax',
+  ].map((code) => [`jcamp-${code}`, damagedHint] as const),
+]);
+
 /**
  * Makes the failure of a file or block.
  *
  * @param code    one of `jcampCodes`
  * @param message what was found, what was expected, what it means; no final newline
  */
-export function refuse(code: JcampCodeName, message: string, where: JcampPlace = {}, hint?: string): Result<never> {
+export function refuse(code: JcampCodeName, message: string, where: JcampPlace = {}): Result<never> {
+  const hint = hints.get(code);
   const problem: Problem = {
     code,
     area: 'decode',

@@ -1,6 +1,7 @@
 import { ok, type Result } from '../base/result.js';
 import { type Header, headerText } from './headerOf.js';
 import { refuse, shown } from './jcampProblem.js';
+import { plainLabel } from './walkRecords.js';
 
 /** What a block is, by its DATA TYPE. `passed-over`: belongs to NMR but holds no spectrum (peaks, assignments, structures). */
 export type BlockKind = 'fid' | 'spectrum' | 'passed-over';
@@ -17,21 +18,18 @@ export function kindOf(header: Header): Result<BlockKind> {
     return header.records.has('JCAMPCS')
       ? ok('passed-over')
       : refuse('jcamp-record-missing', '##DATA TYPE= is missing: it cannot be told what the block holds', { label: 'DATA TYPE' });
-  const type = text
-    .replace(/[\s\-/_]+/g, ' ')
-    .trim()
-    .toUpperCase();
-  if (type === 'NMR PEAK TABLE' || type === 'NMR PEAK ASSIGNMENTS') return ok('passed-over');
+  const type = plainLabel(text);
+  if (type === 'NMRPEAKTABLE' || type === 'NMRPEAKASSIGNMENTS') return ok('passed-over');
   const unsupported = (what: string) =>
     refuse('jcamp-unsupported', `the block holds ${what}; only one-dimensional NMR FIDs and spectra are read`, {
       label: 'DATA TYPE',
     });
-  if (type !== 'NMR FID' && type !== 'NMR SPECTRUM') return unsupported(`"${shown(text)}"`);
+  if (type !== 'NMRFID' && type !== 'NMRSPECTRUM') return unsupported(`"${shown(text)}"`);
   const dimensions = Number(headerText(header, 'NUMDIM') ?? '1');
   if (dimensions > 1) return unsupported(`${dimensions} dimensions (##NUM DIM=)`);
   if (/^N?D|\bND\b|2D/i.test(headerText(header, 'NTUPLES') ?? ''))
     return unsupported(`"${shown(headerText(header, 'NTUPLES')!)}"`);
   if (dataClass !== '' && dataClass !== 'XYDATA' && dataClass !== 'NTUPLES')
     return unsupported(`data of class "${shown(dataClass)}"`);
-  return ok(type === 'NMR FID' ? 'fid' : 'spectrum');
+  return ok(type === 'NMRFID' ? 'fid' : 'spectrum');
 }

@@ -1,5 +1,5 @@
 import { limits } from '../base/limits.js';
-import { ok, type Result } from '../base/result.js';
+import { ok, type Problem, type Result } from '../base/result.js';
 import { refuse, shown } from './jcampProblem.js';
 
 /** One labelled data record, as places in the bytes of the file. */
@@ -13,6 +13,8 @@ export interface JcampRecord {
   /** First byte after the equals sign, and the byte after the last of the record. */
   readonly start: number;
   readonly end: number;
+  /** Set when marks stand without a label: damage that concerns the block around it only. */
+  readonly problem?: Problem;
 }
 
 const labelLengthMax = 256;
@@ -23,7 +25,7 @@ export const byteOf = { lineFeed: 10, return: 13, blank: 32, tab: 9, hash: 35, d
  *
  * @param bytes any line ending (LF, CR LF, CR), with or without byte order mark, blanks before `##` allowed
  * @returns records in file order, and where the text before the first one ends
- * @errors jcamp-no-records, jcamp-line-too-long, jcamp-too-many-labels, jcamp-record-malformed
+ * @errors jcamp-no-records, jcamp-line-too-long, jcamp-too-many-labels; jcamp-record-malformed with the record it concerns
  * @source JCAMP-DX 4.24, section 3 (labelled data records)
  */
 export function walkRecords(bytes: Uint8Array): Result<readonly JcampRecord[]> {
@@ -38,9 +40,7 @@ export function walkRecords(bytes: Uint8Array): Result<readonly JcampRecord[]> {
     const mark = skipBlanks(bytes, start, end);
     if (bytes[mark] === byteOf.hash && bytes[mark + 1] === byteOf.hash && mark + 1 < end) {
       if (open) records.push({ ...open, end: start });
-      const opened = openRecord(bytes, mark + 2, end, line);
-      if (!opened.ok) return opened;
-      open = opened.value;
+      open = openRecord(bytes, mark + 2, end, line);
       if (records.length >= limits.labelCountMax)
         return refuse('jcamp-too-many-labels', `more than ${limits.labelCountMax} records`, { line });
     }
@@ -74,18 +74,19 @@ export function skipBlanks(bytes: Uint8Array, from: number, end: number): number
   return at;
 }
 
-function openRecord(bytes: Uint8Array, start: number, end: number, line: number): Result<Omit<JcampRecord, 'end'>> {
+function openRecord(bytes: Uint8Array, start: number, end: number, line: number): Omit<JcampRecord, 'end'> {
   const last = Math.min(end, start + labelLengthMax);
   let at = start;
   while (at < last && bytes[at] !== byteOf.equals) at += 1;
   const writtenLabel = Buffer.from(bytes.buffer, bytes.byteOffset + start, at - start).toString('latin1');
-  if (at === last)
-    return refuse(
-      'jcamp-record-malformed',
-      `line ${line} starts with ## but no label and equals sign follow: "##${shown(writtenLabel)}"`,
-      { line },
-    );
-  return ok({ label: plainLabel(writtenLabel), writtenLabel: writtenLabel.trim(), line, start: at + 1 });
+  const record = { label: plainLabel(writtenLabel), writtenLabel: shown(writtenLabel.trim()), line, start: at + 1 };
+  if (at < last) return record;
+  const text = `line ${line} starts with ## but no label and equals sign follow: "##${record.writtenLabel}"`;
+  const isCutOff = end === bytes.length;
+  const malformed = isCutOff
+    ? refuse('jcamp-truncated', `the text ends within a label at line ${line}: half written or cut off`, { line })
+    : refuse('jcamp-record-malformed', text, { line });
+  return malformed.ok ? record : { ...record, label: '', start: end, problem: malformed.problem };
 }
 
 /** Labels compare without blanks, dashes, slashes, underscores and case. */

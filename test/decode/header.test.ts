@@ -164,6 +164,23 @@ describe('the header', () => {
     expect(decoded(changed(spectrum, /^##\.OBSERVE FREQUENCY=.*\n/m, '')).axis).toBeUndefined();
   });
 
+  it('refuses time that runs backwards', () => {
+    const odd = changed(changed(fid, /^##FIRST= 0,/m, '##FIRST= 0.0624312,'), /^##LAST= [^,]*,/m, '##LAST= 0,');
+    expect(refusal(odd)).toMatchObject({ code: 'jcamp-axis', message: 'time runs backwards, from 0.0624312 to 0' });
+  });
+
+  it('reads a shift reference whose compound holds commas', () => {
+    const read = decoded(
+      changed(fid, '##ORIGIN=', '##.SHIFT REFERENCE= (external, 2,2-dimethyl-2-silapentane, 12, -0.5)\n##ORIGIN='),
+    );
+    expect(read.shiftReference).toEqual({
+      place: 'external',
+      compound: '2,2-dimethyl-2-silapentane',
+      pointNumber: 12,
+      shiftPpm: -0.5,
+    });
+  });
+
   it.each([
     ['MILLISECONDS', 1e-3],
     ['s', 1],

@@ -94,6 +94,7 @@ describe('a compound file', () => {
 
   it.each([
     ['a changed digit', (text: string) => text.replace(/^(1\d[A-I]\d*)/m, '$17'), 'jcamp-check-ordinate'],
+    ['a label without equals sign', (text: string) => text.replace('##ORIGIN=', '##ORIGIN'), 'jcamp-record-malformed'],
     ['a lost end', (text: string) => text.replace(/##END=\n$/, ''), 'jcamp-block-not-closed'],
     ['half of it lost', (text: string) => text.slice(0, text.lastIndexOf('\n', text.length / 2) + 1), 'jcamp-block-not-closed'],
   ])('with %s in the middle goes on with the others', (_, damage, code) => {
