@@ -11,7 +11,7 @@ import { type SpinSite, spinSites } from './spinSites.js';
 import type { Neighbour, Structure, StructureGroup } from './structure.js';
 import { symmetryClasses } from './symmetryClasses.js';
 
-/** Atoms from one nucleus' atom to another's within four bonds. */
+/** Atoms from one nucleus' atom to another's within five bonds, the furthest that show. */
 const stepsMax = 3;
 
 /**

@@ -21,7 +21,8 @@ export interface SiteCoupling {
  */
 export function siteCoupling(molecule: Molecule, a: SpinSite, b: SpinSite, path: readonly number[]): SiteCoupling | undefined {
   const bonds = path.length - 1 + a.reach + b.reach;
-  if (bonds > 4) return undefined;
+  const throughTriple = path.filter((atom) => carrierKind(molecule, atom) === 'alkyne').length === 2;
+  if (bonds > (throughTriple ? 5 : 4)) return undefined;
   if (a.isExchangeable || b.isExchangeable) return bonds <= 3 ? { kind: 'exchanging', usualHz: 5 } : undefined;
   if (a.element === 'H' && b.element === 'H') return protonCoupling(molecule, a, b, path, bonds);
   const isRing = path.every((atom) => molecule.atoms[atom]!.isAromatic || molecule.atoms[atom]!.element === 'F');
@@ -29,7 +30,7 @@ export function siteCoupling(molecule: Molecule, a: SpinSite, b: SpinSite, path:
   // Fluorine and phosphorus spectra are often decoupled from protons, so seen from there nothing is certain.
   const kind = a.element === 'H' ? 'clear' : 'small';
   if (elements.includes('P')) return bonds <= 3 ? { kind: 'small', usualHz: bonds === 2 ? 15 : 8 } : undefined;
-  if (bonds === 4) return isRing ? { kind: 'small', usualHz: 5.4 } : undefined;
+  if (bonds >= 4) return isRing ? { kind: 'small', usualHz: 5.4 } : undefined;
   if (elements === 'FF') return { kind: 'small', usualHz: bonds === 2 ? 150 : 15 };
   return { kind, usualHz: bonds === 2 ? 47 : isRing ? 8.8 : 18 };
 }
@@ -43,7 +44,7 @@ function protonCoupling(
 ): SiteCoupling | undefined {
   const kinds = path.map((atom) => carrierKind(molecule, atom));
   if (bonds === 2) return { kind: 'small', usualHz: 1.6 };
-  if (bonds === 4) {
+  if (bonds >= 4) {
     const carbonsOnly = kinds.every((kind) => kind !== 'hetero' && kind !== 'carbonyl');
     const isUnsaturated = kinds.filter((kind) => kind !== 'sp3').length >= 2;
     return carbonsOnly && isUnsaturated ? { kind: 'long', usualHz: kinds.includes('alkyne') ? 2.6 : 1.6 } : undefined;

@@ -4,7 +4,7 @@ export type CouplingKind =
   | 'clear'
   /** Two or three bonds, but often below 3 Hz (aldehyde, =CH2): it may not be resolved. */
   | 'small'
-  /** Four bonds (allyl, meta): shows when the lines are narrow. */
+  /** Four bonds (allyl, meta; five through a triple bond): shows when the lines are narrow. */
   | 'long'
   /** Exchangeable protons: by default they neither split nor are split. */
   | 'exchanging';

@@ -87,6 +87,12 @@ describe('structureCheck', () => {
       { o: '8.05 (d, J = 7.7 Hz, 2H)', p: '7.55 (t, J = 7.4 Hz, 1H)', m: '7.44 (t, J = 7.6 Hz, 2H)' },
     ],
     ['4-fluorotoluene', 'Cc1ccc(F)cc1', { a: '7.13 (dd, J = 8.5, 5.6 Hz, 2H)', b: '6.96 (t, J = 8.8 Hz, 2H)' }],
+    [
+      'but-2-yn-1-ol, coupled through the triple bond',
+      'CC#CCO',
+      { a: '4.25 (q, J = 2.4 Hz, 2H)', b: '1.86 (t, J = 2.4 Hz, 3H)' },
+    ],
+    ['propargyl alcohol', 'C#CCO', { a: '4.28 (d, J = 2.5 Hz, 2H)', b: '2.48 (t, J = 2.5 Hz, 1H)' }],
     ['tert-butyl methyl ether', 'COC(C)(C)C', { a: '3.22 (s, 3H)', b: '1.19 (s, 9H)' }],
   ])('agrees with the usual listing of %s', (_, smiles, entries) => {
     const report = check(smiles, entries);
