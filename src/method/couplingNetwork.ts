@@ -31,6 +31,10 @@ export interface CouplingNetwork {
   readonly ambiguous: readonly string[];
 }
 
+/** Two protons of one sp3 carbon couple by -12 to -18 Hz; no neighbours on sp3 carbons reach that (common practice). */
+const geminalFromHz = 12.5;
+const sp2FromPpm = 5.2;
+
 const known = new WeakMap<MethodSpecies, CouplingNetwork>();
 
 /**
@@ -56,7 +60,7 @@ function build(species: MethodSpecies): CouplingNetwork {
     couplings: chosen.map(({ candidate, sets }) => ({
       a: species.signals[candidate.a]!.id,
       b: species.signals[candidate.b]!.id,
-      couplingHz: candidate.couplingHz,
+      couplingHz: signed(species, candidate),
       sets,
       origin: candidate.origin,
     })),
@@ -68,6 +72,15 @@ function build(species: MethodSpecies): CouplingNetwork {
     })),
     ambiguous: ambiguous.map((index) => species.signals[index]!.id),
   };
+}
+
+/** Listings print sizes, but two protons of one CH2 couple with a negative sign, which a strongly coupled pattern shows. */
+function signed(species: MethodSpecies, { a, b, couplingHz, origin }: ChosenCoupling['candidate']): number {
+  const ends = [species.signals[a]!, species.signals[b]!];
+  const isGeminal =
+    Math.abs(couplingHz) >= geminalFromHz &&
+    ends.every(({ nuclei, shiftPpm }) => nuclei === 1 && shiftPpm > 0 && shiftPpm < sp2FromPpm);
+  return origin === 'inferred' && isGeminal ? -Math.abs(couplingHz) : couplingHz;
 }
 
 function leftOver(species: MethodSpecies, index: number, chosen: readonly ChosenCoupling[]): Unexplained[] {

@@ -43,6 +43,17 @@ describe('couplingNetwork infers partners from the listed couplings', () => {
     });
   });
 
+  it('finds an ABX system, the geminal coupling negative', () => {
+    const entries = {
+      X: '4.30 (dd, J = 9.5, 4.5 Hz, 1H)',
+      A: '3.10 (dd, J = 14.0, 4.5 Hz, 1H)',
+      B: '2.95 (dd, J = 14.0, 9.5 Hz, 1H)',
+    };
+    expect(summary(entries)).toEqual({ ...none, couplings: ['X-A 4.5', 'X-B 9.5', 'A-B -14'] });
+    const alkene = { a: '7.6 (d, J = 16.0 Hz, 1H)', b: '6.4 (d, J = 16.0 Hz, 1H)' };
+    expect(summary(alkene).couplings).toEqual(['a-b 16']);
+  });
+
   it('finds an isopropyl group', () => {
     const entries = { CH: '5.01 (sept, J = 6.3 Hz, 1H)', CH3: '1.23 (d, J = 6.3 Hz, 6H)' };
     expect(summary(entries).couplings).toEqual(['CH-CH3 6.3']);
