@@ -34,11 +34,12 @@ export function checkAbscissa(state: TableState, plan: AbscissaPlan): Result<Fla
   if (!delta.ok) return delta;
   const spacing = checkFactor(plan, step, intervals);
   if (!spacing.ok) return spacing;
+  const common = [...delta.value, ...spacing.value];
   const wrong = firstMisplaced(state, plan, step);
-  if (!wrong) return ok([...delta.value, ...coarseFlag(state, step / factor)]);
+  if (!wrong) return ok([...common, ...beginFlag(state, plan, step), ...coarseFlag(state, step / factor)]);
   if (onlyCounts(state, plan, step))
     return ok([
-      ...delta.value,
+      ...common,
       tolerated(
         'jcamp-abscissa-counts',
         'the abscissae of the table count the points; positions are taken from its first and last point',
@@ -91,16 +92,30 @@ function checkDelta({ delta }: AbscissaPlan, step: number): Result<Flag[]> {
 }
 
 /** A factor that is the step, as in tables that count points, must be the step that FIRST and LAST give. */
-function checkFactor(plan: AbscissaPlan, step: number, intervals: number): Result<undefined> {
+function checkFactor(plan: AbscissaPlan, step: number, intervals: number): Result<Flag[]> {
   const factor = Math.abs(plan.factor.value);
   const off = Math.abs(factor - Math.abs(step));
-  const rounding = (plan.first.rounding + plan.last.rounding) / intervals + plan.factor.rounding;
-  if (off <= 1.001 * rounding + 1e-6 * factor || off > 0.05 * factor) return ok(undefined);
+  const ends = (plan.first.rounding + plan.last.rounding) / intervals;
+  if (off <= 1.001 * ends + 1e-6 * factor || off > 0.05 * factor) return ok([]);
+  const text = `the factor of the abscissa is ${factor}, but FIRST and LAST give a step of ${Number(step.toPrecision(9))}, which is used`;
+  if (off <= 1.001 * (ends + plan.factor.rounding)) return ok([tolerated('jcamp-step-rounded', text)]);
   return refuse(
     'jcamp-axis',
     `the factor of the abscissa is ${factor}, but FIRST, LAST and the number of points give a step of ${Number(step.toPrecision(9))}`,
     { label: 'FACTOR' },
   );
+}
+
+/** FIRST is printed for the very point that the first line starts with: no drift can excuse a difference. */
+function beginFlag(state: TableState, plan: AbscissaPlan, step: number): Flag[] {
+  const { abscissa, rounding } = state.lineStarts[0]!;
+  const factor = Math.abs(plan.factor.value);
+  const expected = plan.first.value / plan.factor.value;
+  const relative = Math.min(1e-5, plan.factor.rounding / factor) + 1e-9;
+  const allowed = rounding + plan.first.rounding / factor + relative * Math.abs(expected) + 0.05 * Math.abs(step / factor);
+  if (Math.abs(abscissa - expected) <= allowed) return [];
+  const text = `the table starts at abscissa ${abscissa}, FIRST says ${Number(expected.toPrecision(9))}, which is used`;
+  return [tolerated('jcamp-first-abscissa', text)];
 }
 
 function coarseFlag(state: TableState, stepCount: number): Flag[] {

@@ -59,6 +59,16 @@ export const jcampCodes = [
   { code: 'jcamp-decimal-comma', kind: 'note', meaning: 'a decimal comma in the header was read as a decimal point' },
   { code: 'jcamp-point-count-header', kind: 'note', meaning: 'NPOINTS is off by one; abscissae, DELTAX and table agree' },
   { code: 'jcamp-last-abscissa', kind: 'note', meaning: 'LASTX lies one step beyond the last point' },
+  {
+    code: 'jcamp-step-rounded',
+    kind: 'note',
+    meaning: 'the factor of the abscissa is rounded more coarsely than FIRST and LAST',
+  },
+  {
+    code: 'jcamp-first-abscissa',
+    kind: 'note',
+    meaning: 'the first line of the table starts beside FIRST, by less than half a step',
+  },
   { code: 'jcamp-abscissa-counts', kind: 'note', meaning: 'abscissae of the table only count the points' },
   { code: 'jcamp-abscissa-coarse', kind: 'note', meaning: 'abscissae are printed too coarsely to show a lost line' },
   { code: 'jcamp-delta-sign', kind: 'note', meaning: 'DELTAX has the wrong sign; FIRSTX and LASTX are used' },
@@ -72,6 +82,7 @@ export const jcampCodes = [
   { code: 'jcamp-time-zone-missing', kind: 'note', meaning: 'the time of acquisition has no zone and is taken as UTC' },
   { code: 'jcamp-date-unreadable', kind: 'flag', meaning: 'a date is not understood or day and month cannot be told apart' },
   { code: 'jcamp-value-unreadable', kind: 'note', meaning: 'an optional header value is not understood and was passed over' },
+  { code: 'jcamp-field', kind: 'flag', meaning: '.OBSERVE FREQUENCY and .FIELD do not belong together for the nucleus' },
   { code: 'jcamp-acquisition-time', kind: 'note', meaning: '.ACQUISITION TIME is not points times dwell time' },
 ] as const satisfies readonly JcampCode[];
 

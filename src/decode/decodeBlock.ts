@@ -1,6 +1,7 @@
 import { ok, type Result } from '../base/result.js';
 import { acquiredOf } from './acquiredOf.js';
 import type { Acquisition } from './acquisition.js';
+import { checkField } from './checkField.js';
 import { dataSha256Of } from './dataSha256Of.js';
 import { factsOf, nucleusOf, observeMhzOf } from './factsOf.js';
 import { type Header, headerText } from './headerOf.js';
@@ -50,7 +51,7 @@ export function decodeBlock(
     ...place,
     ...facts,
     ...time,
-    flags: [...header.flags, ...flags],
+    flags: [...header.flags, ...checkField(nucleus, observeMhz.value, facts.fieldT), ...flags],
   };
   return ok({ ...acquisition, dataSha256: dataSha256Of(acquisition) });
 }

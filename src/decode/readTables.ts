@@ -59,7 +59,8 @@ function readTable(bytes: Uint8Array, layout: Layout, plan: Layout['tables'][num
   flags.push(...count.value, ...settled.flags, ...axis.value);
   if (state.endsInDifference)
     flags.push(tolerated('jcamp-final-check-missing', `the table at line ${record.line} ends without its last check ordinate`));
-  const values = state.ordinates.subarray(0, state.count).map((value) => value * factor.value);
+  const values = state.ordinates.slice(0, state.count);
+  for (let k = 0; k < values.length; k += 1) values[k] = values[k]! * factor.value;
   const table = extremesOf(plan, values);
   return table.ok ? ok({ state, table: table.value, start }) : table;
 }

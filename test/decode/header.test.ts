@@ -224,6 +224,22 @@ describe('the header', () => {
     expect(flagCodes(read)).toEqual(['jcamp-last-abscissa']);
   });
 
+  it('flags a frequency that does not belong to field and nucleus', () => {
+    const stated = (fieldT: number) => flagCodes(decoded(changed(fid, '##ORIGIN=', `##.FIELD= ${fieldT}\n##ORIGIN=`)));
+    // 400.13 MHz / 42.577 MHz/T = 9.398 T
+    expect([stated(9.4), stated(9.398), stated(11.7)]).toEqual([[], [], ['jcamp-field']]);
+  });
+
+  it('notes a factor that is rounded, and uses FIRST and LAST', () => {
+    const read = decoded(changed(fid, /^##FACTOR= 0.0002088,/m, '##FACTOR= 0.000209,'));
+    expect([read.dwellS, flagCodes(read)]).toEqual([0.0002088, ['jcamp-step-rounded']]);
+  });
+
+  it('notes a first line that starts beside FIRST', () => {
+    const read = decoded(changed(spectrumText({ form: 'AFFN' }), /^(256\.)\d+/m, '256.5'));
+    expect(flagCodes(read)).toEqual(['jcamp-first-abscissa']);
+  });
+
   it('shows control characters of the file as text in messages', () => {
     const problem = refusal(changed(fid, '400.13', '\u001b]52;c;x\u0007'));
     expect(problem.message).toContain('"\\x1b]52;c;x\\x07"');
