@@ -3,7 +3,7 @@ import type { Problem } from '../base/result.js';
 import type { Line } from '../pattern/pattern.js';
 import { type PatternPeak, patternPeaks } from '../pattern/patternPeaks.js';
 import { printPattern } from '../pattern/printPattern.js';
-import { type Collision, findCollisions, fitInflation } from './collisions.js';
+import { type BackgroundSignal, type Collision, findCollisions, fitInflation } from './collisions.js';
 import { type CouplingNetwork, couplingNetwork } from './couplingNetwork.js';
 import { expectedLines } from './expectedLines.js';
 import type { Method, MethodSignal, MethodSpecies, Use } from './method.js';
@@ -70,10 +70,16 @@ export interface CheckReport {
  * @param method     as read
  * @param fieldsMhz  observe frequencies, MHz
  * @param widthHz    full width at half height of a line, Hz
+ * @param background residual solvent and water, for collisions
  * @returns everything that the terminal, the JSON and the page print
  * @source  see `structureCheck`, `expectedLines`, `overlapShare`, `areaInflation`
  */
-export function checkMethod(method: Method, fieldsMhz: readonly number[], widthHz = 1): CheckReport {
+export function checkMethod(
+  method: Method,
+  fieldsMhz: readonly number[],
+  widthHz = 1,
+  background: readonly BackgroundSignal[] = [],
+): CheckReport {
   const structures = method.species.map((species) => structureCheck(species, method.nucleus));
   const reports = structures.map((result) => (result.ok ? result.value : undefined));
   const contradictions = method.species.flatMap(couplingFlags);
@@ -92,7 +98,7 @@ export function checkMethod(method: Method, fieldsMhz: readonly number[], widthH
     species: method.species.map((species, index) =>
       checkSpecies(species, reports[index], { fieldsMhz, widthHz, inflation, element }),
     ),
-    collisions: fieldsMhz.flatMap((observeMhz) => findCollisions(method, observeMhz, widthHz)),
+    collisions: fieldsMhz.flatMap((observeMhz) => findCollisions(method, observeMhz, widthHz, background)),
     flags: flags.sort((a, b) => isNote(a) - isNote(b)),
     problems: structures.flatMap((result) => (result.ok ? [] : [result.problem])),
   };

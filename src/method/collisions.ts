@@ -1,6 +1,7 @@
+import type { Line } from '../pattern/pattern.js';
 import { areaInflation } from './areaInflation.js';
 import { expectedLines } from './expectedLines.js';
-import type { Method, MethodSignal } from './method.js';
+import type { Method } from './method.js';
 import { extent, overlapShare, type PlacedPattern } from './overlapShare.js';
 
 /** Two signals of different species that lie on each other at a field. */
@@ -29,9 +30,20 @@ const factorHopeless = 20;
 /** Signals whose outer lines are this many widths apart are fitted on their own. */
 const apartWidths = 25;
 
+/** A signal that the tube shows beside the species: residual solvent, water. */
+export interface BackgroundSignal {
+  /** As it is named in sentences, e.g. `residual CDCl3`. */
+  readonly name: string;
+  readonly shiftPpm: number;
+  readonly lines: readonly Line[];
+}
+
 interface Placed extends PlacedPattern {
-  readonly signal: MethodSignal;
+  readonly key: string;
   readonly species: string;
+  readonly isIgnored: boolean;
+  /** Where undeclared lines may lie, ppm. */
+  readonly rangePpm: readonly [number, number];
 }
 
 /**
@@ -40,14 +52,20 @@ interface Placed extends PlacedPattern {
  * @param method      as read; signals with `use: ignore` count as the other half of a pair only
  * @param observeMhz  MHz
  * @param widthHz     full width at half height of a line, Hz
- * @returns in order of the method
+ * @param background  signals of the tube
+ * @returns in order of the method, the background last
  */
-export function findCollisions(method: Method, observeMhz: number, widthHz: number): Collision[] {
-  const placed = placeSignals(method, observeMhz);
+export function findCollisions(
+  method: Method,
+  observeMhz: number,
+  widthHz: number,
+  background: readonly BackgroundSignal[] = [],
+): Collision[] {
+  const placed = [...placeSignals(method, observeMhz), ...placeBackground(background, observeMhz)];
   const found: Collision[] = [];
   for (const [index, a] of placed.entries()) {
     for (const b of placed.slice(index + 1)) {
-      if (a.species === b.species || (a.signal.use === 'ignore' && b.signal.use === 'ignore')) continue;
+      if (a.species === b.species || (a.isIgnored && b.isIgnored)) continue;
       const collision =
         a.lines.length > 0 && b.lines.length > 0 ? ofLines(a, b, observeMhz, widthHz) : ofRange(a, b, observeMhz, widthHz);
       if (collision !== undefined) found.push(collision);
@@ -72,7 +90,7 @@ export function fitInflation(method: Method, observeMhz: number, widthHz: number
   return new Map(
     regions.flatMap((region) => {
       const factors = region.length > 1 ? areaInflation(region, widthHz) : [1];
-      return region.map(({ signal }, index) => [signal.key, factors[index]!] as const);
+      return region.map(({ key }, index) => [key, factors[index]!] as const);
     }),
   );
 }
@@ -80,13 +98,26 @@ export function fitInflation(method: Method, observeMhz: number, widthHz: number
 function placeSignals(method: Method, observeMhz: number): Placed[] {
   return method.species.flatMap((species) => {
     const lines = expectedLines(species, observeMhz);
-    return species.signals.map((signal) => ({
-      signal,
+    return species.signals.map(({ id, key, use, shiftPpm, withinPpm, rangePpm }) => ({
+      key,
       species: species.id,
-      centreHz: signal.shiftPpm * observeMhz,
-      lines: lines.get(signal.id) ?? [],
+      isIgnored: use === 'ignore',
+      centreHz: shiftPpm * observeMhz,
+      lines: lines.get(id) ?? [],
+      rangePpm: rangePpm ?? ([shiftPpm - withinPpm, shiftPpm + withinPpm] as const),
     }));
   });
+}
+
+function placeBackground(background: readonly BackgroundSignal[], observeMhz: number): Placed[] {
+  return background.map(({ name, shiftPpm, lines }) => ({
+    key: name,
+    species: '',
+    isIgnored: true,
+    centreHz: shiftPpm * observeMhz,
+    lines,
+    rangePpm: [shiftPpm, shiftPpm] as const,
+  }));
 }
 
 function isNear(a: Placed, b: Placed, widthHz: number): boolean {
@@ -104,14 +135,14 @@ function ofLines(a: Placed, b: Placed, observeMhz: number, widthHz: number): Col
   const percent = Math.round(100 * overlap);
   const plain =
     overlap < overlapIntegrable ? `plain integration is off by up to ${percent} %` : 'not measurable by plain integration';
-  const head = `at ${plainMhz(observeMhz)} MHz ${a.signal.key} and ${b.signal.key} overlap by ${percent} %: ${plain}, `;
+  const head = `at ${plainMhz(observeMhz)} MHz ${a.key} and ${b.key} overlap by ${percent} %: ${plain}, `;
   const fit =
     factor > factorHopeless
       ? 'nor by fit: the two patterns cannot be told apart'
       : factor > factorHard
         ? `hardly measurable by fit, with u times ${factor.toFixed(0)}`
         : `measurable by fit with u times ${factor.toFixed(1)}`;
-  return { observeMhz, a: a.signal.key, b: b.signal.key, overlap, uFactorA, uFactorB, message: head + fit };
+  return { observeMhz, a: a.key, b: b.key, overlap, uFactorA, uFactorB, message: head + fit };
 }
 
 /** A multiplet without declared lines fills its range. */
@@ -120,9 +151,9 @@ function ofRange(a: Placed, b: Placed, observeMhz: number, widthHz: number): Col
   const [lowB, highB] = range(b, observeMhz, widthHz);
   if (highA < lowB || highB < lowA) return undefined;
   const [open, other] = a.lines.length === 0 ? [a, b] : [b, a];
-  const head = `at ${plainMhz(observeMhz)} MHz ${other.signal.key} lies within ${open.signal.key}, whose lines are not declared`;
+  const head = `at ${plainMhz(observeMhz)} MHz ${other.key} lies within ${open.key}, whose lines are not declared`;
   const message = `${head}: the two cannot be told apart there`;
-  return { observeMhz, a: a.signal.key, b: b.signal.key, message };
+  return { observeMhz, a: a.key, b: b.key, message };
 }
 
 function range(placed: Placed, observeMhz: number, widthHz: number): readonly [number, number] {
@@ -130,8 +161,7 @@ function range(placed: Placed, observeMhz: number, widthHz: number): readonly [n
     const [low, high] = extent(placed);
     return [low - 2 * widthHz, high + 2 * widthHz];
   }
-  const { rangePpm, shiftPpm, withinPpm } = placed.signal;
-  const [low, high] = rangePpm ?? [shiftPpm - withinPpm, shiftPpm + withinPpm];
+  const [low, high] = placed.rangePpm;
   return [low * observeMhz, high * observeMhz];
 }
 

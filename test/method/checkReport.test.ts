@@ -71,6 +71,12 @@ describe('checkMethod', () => {
     expect(report.collisions).toEqual([]);
   });
 
+  it('counts residual solvent and water among what a signal may collide with', () => {
+    const water = { name: 'water', shiftPpm: 1.56, lines: [{ offsetHz: 0, share: 1 }] };
+    const method = methodOf([species('a', { x: '1.57 (s, 3H)', y: '4.01 (s, 3H)' })]);
+    expect(checkMethod(method, [60], 1, [water]).collisions.map(({ a, b }) => [a, b])).toEqual([['a/x', 'water']]);
+  });
+
   it('puts contradictions before remarks', () => {
     const report = checkMethod(
       methodOf([
