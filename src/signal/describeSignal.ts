@@ -2,33 +2,58 @@ import type { Spectrum } from '../spectrum/spectrum.js';
 import { areaOf } from './areaOf.js';
 import type { FittedRegion } from './fitRegions.js';
 import type { MeasuredSignal } from './measured.js';
+import { type Neighbourhood, neighbourhood } from './neighbourhood.js';
 import { plainIntegral } from './plainIntegral.js';
+import { type Rival, rivalPattern } from './rivalPattern.js';
 import type { Target } from './signalTargets.js';
+import { strangeLines } from './strangeLines.js';
 import { linesOfFit } from './tailsOf.js';
-import { verdictOf } from './verdictOf.js';
+import { misfitOf, verdictOf } from './verdictOf.js';
+import type { Whitening } from './whiteningFilter.js';
 
-/** Numbers that the area needs to stand above to count as present: as the detection limit of ICH Q2. */
 const presentFactor = 3.3;
+/** Relative misfit from which another pattern is worth trying. */
+const doubtfulMisfit = 0.04;
+
+/** What the description of a signal draws on. */
+export interface SignalContext {
+  readonly spectrum: Spectrum;
+  readonly whitening: Whitening;
+  /** Every region with declared patterns alone, and with extra lines, in the same order. */
+  readonly plain: readonly FittedRegion[];
+  readonly extra: readonly FittedRegion[];
+  /** Index of the signal's region. */
+  readonly home: number;
+  /** Species of which some signal was found with its pattern. */
+  readonly seenSpecies: ReadonlySet<string>;
+}
 
 /**
  * Turns the fit of a region into the measured signal: area with uncertainty, place, width, and the verdict on its pattern.
  *
  * @source  see `areaOf`, `verdictOf`
  */
-export function describeSignal(spectrum: Spectrum, fitted: FittedRegion, target: Target): MeasuredSignal {
-  const { fit } = fitted;
+export function describeSignal(context: SignalContext, target: Target): MeasuredSignal {
+  const { spectrum } = context;
+  const extra = context.extra[context.home]!;
+  const { fit } = extra;
   const { signal, species, key } = target;
   const { observeMhz } = spectrum;
   const t = fit.model.terms.findIndex((term) => term.key === key);
   const term = fit.model.terms[t]!;
-  const { area, u, u0 } = areaOf(fitted, t);
+  const { area, u, u0 } = areaOf(extra, t);
   const lines = linesOfFit(fit).filter((line) => line.key === key);
-  const isPresent = area > presentFactor * u0 && area > 2 * u;
+  const isPresent = isSignificant(area, u, u0);
   const shiftFree = fit.free.indexOf(term.shift);
   const shiftIndex = fit.model.terms.length + 2 + shiftFree;
   const shiftU = shiftFree < 0 ? undefined : Math.sqrt(fit.covariance[shiftIndex * fit.size + shiftIndex]!) / observeMhz;
-  const verdict = verdictOf(spectrum, fitted, target, { area, isPresent });
-  const isAlone = fitted.region.targets.length === 1;
+  const doubt = signal.pattern.isBroad ? {} : doubtsOf(context, target, isPresent);
+  const isExpected = context.seenSpecies.has(species.id) || species.signals.length === 1;
+  const judged = verdictOf(spectrum, { extra, target, area, isPresent, isExpected, ...doubt });
+  // Where another pattern stands, its area is what is there; the declared one only covers a part of it.
+  const other = judged.verdict === 'differs' ? doubt.rival : undefined;
+  const measured = other && judged.found === other.pattern ? areaOf({ ...doubt.near!, fit: other.fit }, 0) : { area, u };
+  const isAlone = extra.region.targets.length === 1;
   const widest = lines[0]!.widthHz;
   const high = (Math.max(...lines.map((line) => line.shiftHz)) + 12 * widest) / observeMhz;
   const low = (Math.min(...lines.map((line) => line.shiftHz)) - 12 * widest) / observeMhz;
@@ -41,16 +66,33 @@ export function describeSignal(spectrum: Spectrum, fitted: FittedRegion, target:
     shiftPpm: fit.values[term.shift]! / observeMhz,
     ...(shiftU !== undefined ? { shiftU } : {}),
     widthHz: widest,
-    area,
-    u,
+    area: measured.area,
+    u: measured.u,
     ...(isAlone ? { integral: plainIntegral(spectrum, low, high).area } : {}),
     declared: signal.pattern.text,
     ...(isPresent && couplings.length > 0 ? { couplingsHz: couplings } : {}),
-    ...(isPresent ? {} : { areaUpper95: Math.max(0, area) + 1.645 * Math.max(u, u0) }),
+    ...(judged.verdict === 'absent' ? { areaUpper95: Math.max(0, area) + 1.645 * Math.max(u, u0) } : {}),
     u0,
-    fittedWith: correlations(fitted, t),
-    ...verdict,
+    fittedWith: correlations(extra, t),
+    ...judged,
   };
+}
+
+/** Whether an area stands clear of zero: as the detection limit of ICH Q2, and of its own uncertainty. */
+export function isSignificant(area: number, u: number, u0: number): boolean {
+  return area > presentFactor * u0 && area > 2 * u;
+}
+
+/** Looks for another pattern where the declared one leaves lines unexplained. */
+function doubtsOf(context: SignalContext, target: Target, isPresent: boolean): { near?: Neighbourhood; rival?: Rival } {
+  const home = context.plain[context.home]!;
+  const isStrong = isPresent || context.extra[context.home]!.fit.areas.length > home.fit.areas.length;
+  if (!isStrong) return {};
+  const near = neighbourhood(context.spectrum, context.plain, home, target, context.whitening);
+  const { all, strange } = strangeLines(near);
+  if (strange.length === 0 && misfitOf(near, target) < doubtfulMisfit) return {};
+  const rival = rivalPattern(near, all);
+  return { near, ...(rival ? { rival } : {}) };
 }
 
 function correlations(fitted: FittedRegion, t: number): MeasuredSignal['fittedWith'] {

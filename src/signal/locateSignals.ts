@@ -12,6 +12,8 @@ export interface Located {
 
 /** A gain in chi-square that noise alone reaches in fewer than 1 of 10,000 searches over some hundred places. */
 const gainMin = 30;
+/** Power of the lines under a misfitting pattern, in units of the noise, from which something is surely there. */
+const powerMin = 150;
 const kernelWidths = 4;
 
 /**
@@ -38,7 +40,8 @@ export function locateSignals(spectrum: Spectrum, targets: readonly Target[], wi
       candidates.sort((a, b) => b.place.gain - a.place.gain || (a.target.key < b.target.key ? -1 : 1));
       const { target, place } = candidates[0]!;
       open.delete(target);
-      const isPresent = place.gain > gainMin;
+      // Strong lines that the pattern does not fit are placed too: the verdict will say that they differ.
+      const isPresent = place.gain > gainMin || place.power > powerMin;
       const shiftHz = isPresent ? place.shiftHz : target.signal.shiftPpm * spectrum.observeMhz;
       located.set(target.key, { shiftHz, isPresent, gain: place.gain });
       if (isPresent) takeAway(spectrum, left, target, place, widthHz);
@@ -51,6 +54,8 @@ interface Place {
   readonly shiftHz: number;
   readonly gain: number;
   readonly area: number;
+  /** Gain without the misfit taken off. */
+  readonly power: number;
 }
 
 function bestPlace(spectrum: Spectrum, left: Float64Array, target: Target, widthHz: number): Place {
@@ -64,12 +69,13 @@ function bestPlace(spectrum: Spectrum, left: Float64Array, target: Target, width
   const low = centre - reach + target.spanHz[0];
   const from = Math.max(0, Math.floor((firstHz - high) / stepHz) - 1);
   const to = Math.min(left.length, Math.ceil((firstHz - low) / stepHz) + 2);
-  const none = { shiftHz: centre, gain: 0, area: 0 };
+  const none = { shiftHz: centre, gain: 0, area: 0, power: 0 };
   if (to - from < 3) return none;
   const { filtered, energy } = matched(left, from, to, width, stepHz);
   const expected = expectedResponses(lines, width, stepHz);
   const shares = expected.reduce((sum, value) => sum + value * value, 0);
   let best: Place & { score: number } = { ...none, score: 0 };
+  let strongest: Place = none;
   const step = Math.max(1, Math.floor(width / (5 * stepHz)));
   const start = Math.max(0, Math.ceil((firstHz - (centre + reach)) / stepHz));
   const end = Math.min(left.length - 1, Math.floor((firstHz - (centre - reach)) / stepHz));
@@ -85,12 +91,14 @@ function bestPlace(spectrum: Spectrum, left: Float64Array, target: Target, width
     for (const [k, { offsetHz }] of lines.entries()) {
       misfit += ((filtered[Math.round(index - offsetHz / stepHz) - from] ?? 0) - expected[k]! * area) ** 2;
     }
-    const gain = ((area * area * shares - misfit) * energy) / (noise * noise);
+    const power = (area * area * shares * energy) / (noise * noise);
+    const gain = power - (misfit * energy) / (noise * noise);
     const off = (shiftHz - centre) / reach;
     const score = gain * Math.exp(-off * off);
-    if (score > best.score) best = { shiftHz, gain, area, score };
+    if (score > best.score) best = { shiftHz, gain, area, score, power };
+    if (power * Math.exp(-off * off) > strongest.power) strongest = { shiftHz, gain, area, power: power * Math.exp(-off * off) };
   }
-  return best;
+  return best.score > 0 ? best : strongest;
 }
 
 /** What the matched filter answers at each line of a pattern of unit area: its own share and what neighbours add. */

@@ -1,10 +1,11 @@
 import type { Method } from '../method/method.js';
 import type { Spectrum } from '../spectrum/spectrum.js';
 import { addExtraLines } from './addExtraLines.js';
-import { describeSignal } from './describeSignal.js';
+import { areaOf } from './areaOf.js';
+import { describeSignal, isSignificant } from './describeSignal.js';
 import { drawStrip } from './drawStrip.js';
 import { findUnassigned } from './findUnassigned.js';
-import { fitRegions } from './fitRegions.js';
+import { type FittedRegion, fitRegions } from './fitRegions.js';
 import { flagSignals } from './flagSignals.js';
 import { groupRegions } from './groupRegions.js';
 import { guessWidth } from './guessWidth.js';
@@ -14,6 +15,7 @@ import type { MeasuredSignal, Measurement } from './measured.js';
 import { measureRange } from './measureRange.js';
 import { measureSolvents } from './measureSolvents.js';
 import { signalTargets, type Target } from './signalTargets.js';
+import { misfitOf } from './verdictOf.js';
 import { whiteningFilter } from './whiteningFilter.js';
 
 /** A line found beside a pattern must hold this share of the region's area: below, it may be the line shape's own fault. */
@@ -41,12 +43,14 @@ export function measureSignals(spectrum: Spectrum, method: Method): Measurement 
   const explained = fitted.map((region) => addExtraLines(region, leftOverShareMin));
 
   const byKey = new Map<string, MeasuredSignal>();
-  for (const region of explained) {
-    for (const target of region.region.targets) {
-      const strip = drawStrip(spectrum, region, target);
-      byKey.set(target.key, { ...describeSignal(spectrum, region, target), ...(strip ? { strip } : {}) });
+  const seenSpecies = speciesSeen(explained);
+  explained.forEach((extra, home) => {
+    for (const target of extra.region.targets) {
+      const strip = drawStrip(spectrum, extra, target);
+      const described = describeSignal({ spectrum, whitening, plain: fitted, extra: explained, home, seenSpecies }, target);
+      byKey.set(target.key, { ...described, ...(strip ? { strip } : {}) });
     }
-  }
+  });
   const ranged = targets.filter(({ lines }) => lines.length === 0);
   for (const target of ranged) byKey.set(target.key, measureRange(spectrum, target, explained));
   const signals = targets.map(({ key }) => byKey.get(key)!);
@@ -59,6 +63,18 @@ export function measureSignals(spectrum: Spectrum, method: Method): Measurement 
     lineShape: { widthHz: shape.widthHz, lorentzShare: shape.lorentzShare, asymmetry: spectrum.quality.referenceAsymmetry ?? 0 },
     flags: flagSignals(signals),
   };
+}
+
+/** Species of which at least one signal is there with its own pattern. */
+function speciesSeen(regions: readonly FittedRegion[]): Set<string> {
+  const seen = new Set<string>();
+  for (const region of regions) {
+    region.region.targets.forEach((target, t) => {
+      const { area, u, u0 } = areaOf(region, t);
+      if (isSignificant(area, u, u0) && misfitOf(region, target) < 0.1) seen.add(target.species.id);
+    });
+  }
+  return seen;
 }
 
 /** Height of the tallest data point under a diagnostic signal over the rms noise. */

@@ -96,7 +96,8 @@ export function withCouplings(lines: readonly Line[], pattern: Pattern, coupling
   return isFirstOrder ? levels.sort((a, b) => b.offsetHz - a.offsetHz) : own.map(({ line }) => line);
 }
 
-function levelsOf(pattern: Pattern, couplingsHz: readonly number[]): TermLine[] {
+/** Every line of a first-order pattern by itself, coincident ones apart. */
+export function levelsOf(pattern: Pick<Pattern, 'splittings'>, couplingsHz: readonly number[]): TermLine[] {
   let levels: TermLine[] = [{ offsetHz: 0, share: 1, perCoupling: [] }];
   pattern.splittings.forEach(({ neighbours }, k) => {
     const row = pascalRow(neighbours);

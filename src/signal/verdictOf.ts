@@ -1,13 +1,16 @@
+import { splittingLetters } from '../pattern/splittingLetters.js';
 import type { Spectrum } from '../spectrum/spectrum.js';
 import { extraPrefix } from './addExtraLines.js';
 import type { FittedRegion } from './fitRegions.js';
 import type { MeasuredSignal, Verdict } from './measured.js';
+import type { Neighbourhood } from './neighbourhood.js';
 import { patternWords } from './patternWords.js';
+import type { Rival } from './rivalPattern.js';
 import type { Target } from './signalTargets.js';
 import { linesOfFit } from './tailsOf.js';
 
 type Judged = Pick<MeasuredSignal, 'verdict' | 'words'> &
-  Partial<Pick<MeasuredSignal, 'found' | 'leftOver' | 'other' | 'neighboursImplied'>>;
+  Partial<Pick<MeasuredSignal, 'found' | 'leftOver' | 'other' | 'neighboursImplied' | 'couplingsHz'>>;
 
 /** Lines of another signal this close cannot be told apart by eye. */
 const crowdedWidths = 1.5;
@@ -15,29 +18,81 @@ const crowdedWidths = 1.5;
 const crowdedShare = 0.02;
 /** Relative rms misfit above which the lines are not the declared pattern's. */
 const misfitMax = 0.12;
+/** Below this a better pattern is a detail: a doublet of doublets with nearly equal couplings listed as a triplet. */
+const detailMisfit = 0.05;
+const oddsMin = 1000;
+/** Share left over above which the signal is no longer by itself. */
+const crowdedLeftOver = 0.25;
+
+/** What `verdictOf` judges. */
+export interface Evidence {
+  /** The region with the lines that had to be added. */
+  readonly extra: FittedRegion;
+  readonly target: Target;
+  readonly area: number;
+  readonly isPresent: boolean;
+  /** The signal by itself with its declared pattern alone, and the best other pattern, when there was doubt. */
+  readonly near?: Neighbourhood;
+  readonly rival?: Rival;
+  /** Whether other signals of the species are there: then this one should be. */
+  readonly isExpected: boolean;
+}
 
 /**
  * The verdict on one signal's declared pattern, with its numbers and in words.
  *
- * @source  own
+ * @returns verdict, what was found, what is left over, the best other pattern
+ * @source  own; odds by BIC as in `rivalPattern`
  */
-export function verdictOf(
-  spectrum: Spectrum,
-  fitted: FittedRegion,
-  target: Target,
-  { area, isPresent }: { readonly area: number; readonly isPresent: boolean },
-): Judged {
+export function verdictOf(spectrum: Spectrum, evidence: Evidence): Judged {
+  const { extra, target, area, isPresent, rival } = evidence;
   const declared = patternWords(target.signal.pattern);
-  if (!isPresent) return { verdict: 'absent', words: `${declared} absent` };
-  const leftOver = leftOverOf(spectrum, fitted, target, area);
+  if (rival !== undefined && isProven(evidence, rival)) return differing(declared, rival);
+  const leftOver = leftOverOf(spectrum, extra, target, area);
+  const other = rival === undefined ? {} : { other: { pattern: rival.pattern, odds: rival.oddsAgainstExtras } };
   const rest = leftOver ? `; ${percent(leftOver.share)} left over at ${leftOver.shiftPpm.toFixed(3)} ppm` : '';
-  if (misfitOf(fitted, target) > misfitMax) {
-    return { verdict: 'differs', ...(leftOver ? { leftOver } : {}), words: `the lines are not those of a ${declared}${rest}` };
+  const found = { ...other, ...(leftOver ? { leftOver } : {}) };
+  if (!isPresent) {
+    const instead = leftOver ? `; something else at ${leftOver.shiftPpm.toFixed(3)} ppm` : '';
+    return { verdict: 'absent', ...found, words: `${declared} absent${instead}` };
   }
-  const crowd = crowdedBy(fitted, target, area);
+  if (misfitOf(extra, target) > misfitMax) {
+    return { verdict: 'differs', ...found, words: `the lines are not those of a ${declared}${rest}` };
+  }
+  const unknown = (leftOver?.share ?? 0) > crowdedLeftOver ? 'lines that nothing explains' : undefined;
+  const crowd = crowdedBy(extra, target, area) ?? unknown;
   const verdict: Verdict = crowd !== undefined ? 'crowded' : 'matches';
-  const words = crowd !== undefined ? `${declared}, its lines crowded by ${crowd}${rest}` : `${declared} as expected${rest}`;
-  return { verdict, found: target.signal.pattern.text, ...(leftOver ? { leftOver } : {}), words };
+  const words = crowd !== undefined ? `${declared}, crowded by ${crowd}${rest}` : `${declared} as expected${rest}`;
+  const neighboursImplied = neighboursOf(target.signal.pattern);
+  return { verdict, found: target.signal.pattern.text, neighboursImplied, ...found, words };
+}
+
+/**
+ * Another pattern is proven when it beats the declared one with and without extra lines, and by more than a detail of the
+ * shape. Where nothing of the declared pattern is there, whatever else is there differs only if the species is.
+ */
+function isProven({ near, target, isPresent, isExpected }: Evidence, rival: Rival): boolean {
+  if (near === undefined || rival.oddsAgainstDeclared < oddsMin || misfitOf(near, target) < detailMisfit) return false;
+  return isPresent ? rival.oddsAgainstExtras > oddsMin : isExpected;
+}
+
+function differing(declared: string, rival: Rival): Judged {
+  const splittings = rival.neighbours.map((neighbours) => ({ letter: splittingLetters[neighbours]!, neighbours }));
+  const found = patternWords({ splittings, isBroad: false, isMultiplet: false });
+  const couplingsHz = rival.couplingsHz.map((value) => Math.round(value * 100) / 100);
+  const couplings = couplingsHz.length > 0 ? `, J = ${couplingsHz.map((value) => value.toFixed(1)).join(', ')} Hz` : '';
+  return {
+    verdict: 'differs',
+    found: rival.pattern,
+    couplingsHz,
+    other: { pattern: rival.pattern, odds: rival.oddsAgainstExtras },
+    neighboursImplied: rival.neighbours.reduce((sum, n) => sum + n, 0),
+    words: `a ${found}${couplings}, where a ${declared} is expected`,
+  };
+}
+
+function neighboursOf(pattern: Target['signal']['pattern']): number {
+  return pattern.splittings.reduce((sum, { neighbours }) => sum + neighbours, 0);
 }
 
 function leftOverOf(spectrum: Spectrum, fitted: FittedRegion, target: Target, area: number): MeasuredSignal['leftOver'] {
@@ -65,7 +120,7 @@ function leftOverOf(spectrum: Spectrum, fitted: FittedRegion, target: Target, ar
 }
 
 /** rms of the residual beyond noise over rms of the signal, around the signal's lines. */
-function misfitOf(fitted: FittedRegion, target: Target): number {
+export function misfitOf(fitted: Pick<FittedRegion, 'fit' | 'window'>, target: Target): number {
   const { fit, window } = fitted;
   const own = linesOfFit(fit).filter((line) => line.key === target.key);
   let excess = 0;
