@@ -30,6 +30,8 @@ export const byteOf = { lineFeed: 10, return: 13, blank: 32, tab: 9, hash: 35, d
  */
 export function walkRecords(bytes: Uint8Array): Result<readonly JcampRecord[]> {
   const records: JcampRecord[] = [];
+  const text = Buffer.from(bytes.buffer, bytes.byteOffset, bytes.length);
+  const labels: Labels = new Map();
   let open: Omit<JcampRecord, 'end'> | undefined;
   let line = 0;
   for (let start = skipByteOrderMark(bytes); start < bytes.length; ) {
@@ -40,7 +42,7 @@ export function walkRecords(bytes: Uint8Array): Result<readonly JcampRecord[]> {
     const mark = skipBlanks(bytes, start, end);
     if (bytes[mark] === byteOf.hash && bytes[mark + 1] === byteOf.hash && mark + 1 < end) {
       if (open) records.push({ ...open, end: start });
-      open = openRecord(bytes, mark + 2, end, line);
+      open = openRecord(text, labels, mark + 2, end, line);
       if (records.length >= limits.labelCountMax)
         return refuse('jcamp-too-many-labels', `more than ${limits.labelCountMax} records`, { line });
     }
@@ -74,12 +76,17 @@ export function skipBlanks(bytes: Uint8Array, from: number, end: number): number
   return at;
 }
 
-function openRecord(bytes: Uint8Array, start: number, end: number, line: number): Omit<JcampRecord, 'end'> {
+/** Labels met before, by their spelling: a file of many records has few different ones. */
+type Labels = Map<string, Pick<JcampRecord, 'label' | 'writtenLabel'>>;
+
+function openRecord(bytes: Buffer, labels: Labels, start: number, end: number, line: number): Omit<JcampRecord, 'end'> {
   const last = Math.min(end, start + labelLengthMax);
   let at = start;
   while (at < last && bytes[at] !== byteOf.equals) at += 1;
-  const writtenLabel = Buffer.from(bytes.buffer, bytes.byteOffset + start, at - start).toString('latin1');
-  const record = { label: plainLabel(writtenLabel), writtenLabel: shown(writtenLabel.trim()), line, start: at + 1 };
+  const spelling = bytes.toString('latin1', start, at);
+  const label = labels.get(spelling) ?? { label: plainLabel(spelling), writtenLabel: shown(spelling.trim()) };
+  labels.set(spelling, label);
+  const record = { ...label, line, start: at + 1 };
   if (at < last) return record;
   const text = `line ${line} starts with ## but no label and equals sign follow: "##${record.writtenLabel}"`;
   const isCutOff = end === bytes.length;

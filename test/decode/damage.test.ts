@@ -51,7 +51,7 @@ describe('damaged difference tables', () => {
         bytes[at(bytes, where)]! ^= 1 << bit;
         mustBeCaughtOrUnderstood(bytes, original);
       }),
-      { numRuns: 4000, seed },
+      { numRuns: 1500, seed },
     );
   });
 
@@ -80,7 +80,7 @@ describe('damaged difference tables', () => {
           mustBeCaughtOrUnderstood(bytes, original);
         },
       ),
-      { numRuns: 3000, seed },
+      { numRuns: 1200, seed },
     );
   });
 
@@ -115,7 +115,7 @@ describe('damaged difference tables', () => {
         const [start, end] = [Math.min(from, to), Math.max(from, to)].map((where) => at(whole, where)) as [number, number];
         mustBeCaughtOrUnderstood(Uint8Array.from([...whole.subarray(0, start), ...whole.subarray(end)]), original);
       }),
-      { numRuns: 1000, seed },
+      { numRuns: 400, seed },
     );
   });
 });
@@ -142,7 +142,7 @@ describe('damaged plain tables', () => {
         const result = decodeJcamp(bytes, 'damaged.jdx');
         for (const block of result.ok ? result.value : []) if (block.ok) expect(block.value.real.length).toBe(300);
       }),
-      { numRuns: 1500, seed },
+      { numRuns: 500, seed },
     );
   });
 });
@@ -161,7 +161,7 @@ describe('damaged real files', () => {
           for (const block of result.ok ? result.value : [])
             if (block.ok) expect(difference(truth, block.value)).toBeLessThanOrEqual(1e-4);
         }),
-        { numRuns: 400, seed },
+        { numRuns: 150, seed },
       );
     },
   );
@@ -185,7 +185,7 @@ describe('arbitrary bytes', () => {
       fc.property(fc.array(fc.oneof(fragment, fc.string({ maxLength: 12 })), { maxLength: 60 }), (pieces) => {
         decodeJcamp(Buffer.from(pieces.join('')), 'noise');
       }),
-      { numRuns: 2000, seed },
+      { numRuns: 1000, seed },
     );
     fc.assert(
       fc.property(fc.uint8Array({ maxLength: 400 }), (bytes) => {
