@@ -25,7 +25,7 @@ export interface DecodeOptions {
  * 4. `decodeLeaves`, `kindOf`: FID, spectrum, something to pass over, or something this program does not read.
  * 5. `decodeBlock`, `xyDataLayout` / `ntuplesLayout`: what the header states of the axis and of each table.
  * 6. `readTables`, `walkTable`: decodes AFFN, PAC, SQZ, DIF and DUP and holds every check ordinate; repeat counts are limited first.
- * 7. `checkCount`, `checkAbscissa`, `checkOrdinates`: the table against NPOINTS, FIRST, LAST, DELTA, FACTOR, MIN and MAX.
+ * 7. `checkCount`, `settleAxis` (`checkAbscissa`), `checkOrdinates`: the table against NPOINTS, FIRST, LAST, DELTA, FACTOR, MIN and MAX.
  * 8. `compareDecoders`: jcampconverter reads the same tables; one different number is a refusal.
  * 9. `placeOf`, `factsOf`, `acquiredOf`: dwell time or axis, standard facts, time of acquisition.
  *

@@ -1,13 +1,12 @@
 import type { Flag } from '../base/flag.js';
 import { ok, type Result } from '../base/result.js';
-import { checkAbscissa } from './checkAbscissa.js';
 import { checkCount } from './checkCount.js';
 import { checkOrdinates, extremesOf } from './checkOrdinates.js';
 import { compareDecoders, type WalkedTable } from './compareDecoders.js';
 import { refuse, tolerated } from './jcampProblem.js';
-import type { AbscissaPlan, Layout } from './layout.js';
+import type { AbscissaPlan, Layout, TablePlan } from './layout.js';
 import { firstLineOf } from './recordText.js';
-import { settleLast } from './settleLast.js';
+import { type SettledAxis, settleAxis } from './settleAxis.js';
 import { walkTable } from './walkTable.js';
 
 /** Checked numbers of a block. */
@@ -26,11 +25,12 @@ export interface Tables {
  */
 export function readTables(bytes: Uint8Array, layout: Layout): Result<Tables> {
   const flags: Flag[] = [];
-  const walked: WalkedTable[] = [];
+  const walked: (WalkedTable & SettledAxis)[] = [];
   for (const plan of layout.tables) {
-    const one = readTable(bytes, layout, plan, flags);
+    const one = readTable(bytes, layout, plan);
     if (!one.ok) return one;
     walked.push(one.value);
+    flags.push(...one.value.flags);
   }
   const [real, imag] = walked.map(({ table }) => table.values);
   if (imag && imag.length !== real!.length)
@@ -39,11 +39,11 @@ export function readTables(bytes: Uint8Array, layout: Layout): Result<Tables> {
   if (!ordinates.ok) return ordinates;
   const agreed = compareDecoders(walked);
   if (!agreed.ok) return agreed;
-  const { abscissa } = settleLast(layout.abscissa, real!.length);
+  const { abscissa } = walked[0]!;
   return ok({ real: real!, ...(imag ? { imag } : {}), abscissa, flags: distinct([...flags, ...ordinates.value]) });
 }
 
-function readTable(bytes: Uint8Array, layout: Layout, plan: Layout['tables'][number], flags: Flag[]): Result<WalkedTable> {
+function readTable(bytes: Uint8Array, layout: Layout, plan: TablePlan): Result<WalkedTable & SettledAxis> {
   const { record, pointsStated, factor } = plan;
   const { next: start } = firstLineOf(bytes, record);
   const walk = walkTable(bytes, { start, end: record.end, firstLine: record.line + 1 }, pointsStated);
@@ -53,16 +53,15 @@ function readTable(bytes: Uint8Array, layout: Layout, plan: Layout['tables'][num
     return refuse('jcamp-too-few-points', `the table at line ${record.line} holds ${state.count} points`, { line: record.line });
   const count = checkCount(state, plan, layout.abscissa);
   if (!count.ok) return count;
-  const settled = settleLast(layout.abscissa, state.count);
-  const axis = checkAbscissa(state, settled.abscissa);
+  const axis = settleAxis(state, layout.abscissa);
   if (!axis.ok) return axis;
-  flags.push(...count.value, ...settled.flags, ...axis.value);
+  const flags = [...count.value, ...axis.value.flags];
   if (state.endsInDifference)
     flags.push(tolerated('jcamp-final-check-missing', `the table at line ${record.line} ends without its last check ordinate`));
   const values = state.ordinates.slice(0, state.count);
   for (let k = 0; k < values.length; k += 1) values[k] = values[k]! * factor.value;
   const table = extremesOf(plan, values);
-  return table.ok ? ok({ state, table: table.value, start }) : table;
+  return table.ok ? ok({ state, table: table.value, start, abscissa: axis.value.abscissa, flags }) : table;
 }
 
 /** Both pages share an axis: what is said of it is said once. */

@@ -19,7 +19,7 @@ describe('limits', () => {
       const before = process.memoryUsage().arrayBuffers;
       const started = performance.now();
       expect(refusal(bomb(token)).code).toBe('jcamp-repeat-limit');
-      expect(performance.now() - started).toBeLessThan(100);
+      expect(performance.now() - started).toBeLessThan(1000);
       expect(process.memoryUsage().arrayBuffers - before).toBeLessThan(16e6);
     },
   );
@@ -73,7 +73,7 @@ describe('limits', () => {
     const started = performance.now();
     const result = decodeJcamp(bytes, 'big');
     expect([result.ok, !result.ok && result.problem.code]).toEqual([false, 'jcamp-file-too-large']);
-    expect(performance.now() - started).toBeLessThan(50);
+    expect(performance.now() - started).toBeLessThan(1000);
   });
 
   it.each([
