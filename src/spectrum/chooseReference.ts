@@ -3,7 +3,9 @@ import type { Method } from '../method/method.js';
 import type { Expectation } from './expectations.js';
 import { type PinnedReference, type PlacedAxis, pinReference } from './pinReference.js';
 
-const withinPpm = 0.12;
+/** A reference lies this near to where the other lines put it; water moves with temperature and acidity. */
+const withinPpm = 0.05;
+const waterWithinPpm = 0.12;
 
 /**
  * Pins the axis on the method's reference, or on the next best thing that is there, named in a flag.
@@ -23,7 +25,7 @@ export function chooseReference(
   const wanted = method.reference.signal;
   const named = expectations.find(({ name, kind }) => (wanted === 'solvent' ? kind === 'solvent' : name === wanted));
   const target = named && method.reference.shiftPpm !== undefined ? { ...named, shiftPpm: method.reference.shiftPpm } : named;
-  const first = target ? pinReference(real, axis, noise, target, withinPpm) : undefined;
+  const first = target ? pinReference(real, axis, noise, target, wanted === 'HDO' || (wanted === 'solvent' && method.solvent === 'D2O') ? waterWithinPpm : withinPpm) : undefined;
   if (first) return { pinned: first, flags: first.isSplit ? [splitFlag(wanted)] : [] };
   for (const next of ranked(expectations, wanted)) {
     const pinned = pinReference(real, axis, noise, next, withinPpm);

@@ -44,6 +44,10 @@ export function phaseSpectrum(
   if (local.length === 0) return done(spectrum, 0, 0, 'automatic', 0, [uncertain('no line stands out enough to phase on')]);
   if (isReal && isInPhase(local)) return done(spectrum, 0, 0, 'left as it came, in phase', local.length, []);
   const fit = fitPhase(local, spectrum.real.length, rad(firstDegMax));
+  // A spectrum that was phased at the instrument is not turned again for a few degrees that its overlaps may well fake.
+  if (isReal && Math.abs(fit.zeroRad) < inPhaseRad && Math.abs(fit.firstRad) < 8 * inPhaseRad) {
+    return done(spectrum, 0, 0, 'left as it came, in phase', local.length, []);
+  }
   const flags = phaseFlags(fit);
   if (isReal)
     flags.push({

@@ -45,13 +45,16 @@ export function pinReference(
   const offsets = expectation.lines.map(({ offsetHz, share }) => ({ points: -offsetHz / observeMhz / stepPpm, share }));
   const power = offsets.reduce((sum, { share }) => sum + share * share, 0);
   const matched = new Float64Array(to - from + 1);
+  const favour = new Float64Array(to - from + 1);
+  const expectedIndex = (firstPpm - expectation.shiftPpm) / stepPpm;
   for (let i = from; i <= to; i += 1) {
-    let sum = 0;
-    for (const { points, share } of offsets) sum += share * valueAt(real, i + points);
-    matched[i - from] = sum / power;
+    matched[i - from] = matchedAt(real, i, offsets, power);
+    const away = ((i - expectedIndex) * stepPpm) / (withinPpm / 2);
+    favour[i - from] = matched[i - from]! * Math.exp(-0.5 * away * away);
   }
   let best = 1;
-  for (let i = 1; i < matched.length - 1; i += 1) if (matched[i]! > matched[best]!) best = i;
+  for (let i = 1; i < favour.length - 1; i += 1) if (favour[i]! > favour[best]!) best = i;
+  best = climb(matched, best);
   const signalToNoise = (matched[best]! * Math.sqrt(power)) / noise;
   if (!(signalToNoise > 5)) return undefined;
   const [left, middle, right] = [matched[best - 1]!, matched[best]!, matched[best + 1]!];
@@ -69,6 +72,28 @@ export function pinReference(
     signalToNoise,
     isSplit: offsets.length === 1 && hasTwoTops(real, top, widthPoints, noise),
   };
+}
+
+/**
+ * The amplitude of the pattern at a place. Every line must be there: a foreign singlet under one line of a quintet is no quintet, so
+ * the least line bounds the whole.
+ */
+function matchedAt(real: Float64Array, place: number, offsets: readonly { points: number; share: number }[], power: number): number {
+  let sum = 0;
+  let least = Number.POSITIVE_INFINITY;
+  for (const { points, share } of offsets) {
+    const value = valueAt(real, place + points);
+    sum += share * value;
+    if (share > 0.05) least = Math.min(least, value / share);
+  }
+  return Math.min(sum / power, 1.5 * least);
+}
+
+function climb(values: Float64Array, start: number): number {
+  let best = start;
+  while (best + 1 < values.length - 1 && values[best + 1]! > values[best]!) best += 1;
+  while (best - 1 > 0 && values[best - 1]! > values[best]!) best -= 1;
+  return best;
 }
 
 function valueAt(real: Float64Array, place: number): number {

@@ -60,10 +60,11 @@ export function placeAxis(
     });
   const best = places.reduce<AxisPlace | undefined>((top, place) => (!top || place.score > top.score ? place : top), undefined);
   if (!best) return { centrePpm: hint?.centrePpm ?? 0, isRising: hint?.isRising ?? true, score: 0, runnerUp: 0 };
+  const centrePpm = best.centrePpm + consensusOffset(orient(found, best.isRising), sought, best.centrePpm);
   const others = places.filter(
     (place) => place.isRising !== best.isRising || Math.abs(place.centrePpm - best.centrePpm) > 3 * tolerancePpm,
   );
-  return { ...best, runnerUp: others.reduce((top, { score }) => Math.max(top, score), 0) };
+  return { ...best, centrePpm, runnerUp: others.reduce((top, { score }) => Math.max(top, score), 0) };
 }
 
 type Weighed = { readonly offsetPpm: number; readonly weight: number };
@@ -121,6 +122,33 @@ function meet(found: readonly Weighed[], sought: readonly Sought[], centrePpm: n
     if (explained[index] === 1) met += weight;
   });
   return total > 0 && all > 0 ? 0.5 * (present / total) + 0.5 * (met / all) : 0;
+}
+
+/**
+ * What the met lines agree on: the weighted median of (expected - found) over the expectations, each by the middle of the lines that
+ * meet it. One line that is not what it was taken for cannot move it.
+ */
+function consensusOffset(found: readonly Weighed[], sought: readonly Sought[], centrePpm: number): number {
+  const offsets: { value: number; weight: number }[] = [];
+  for (const { shiftPpm, reachPpm, sureness, kind } of sought) {
+    if (kind === 'water') continue;
+    const offset = shiftPpm - centrePpm;
+    const reach = reachPpm + 2 * tolerancePpm;
+    let [sum, weight] = [0, 0];
+    for (let k = lowerBound(found, offset - reach); k < found.length && found[k]!.offsetPpm <= offset + reach; k += 1) {
+      sum += found[k]!.offsetPpm * found[k]!.weight;
+      weight += found[k]!.weight;
+    }
+    if (weight > 0) offsets.push({ value: offset - sum / weight, weight: sureness });
+  }
+  offsets.sort((a, b) => a.value - b.value);
+  const half = offsets.reduce((sum, { weight }) => sum + weight, 0) / 2;
+  let running = 0;
+  for (const { value, weight } of offsets) {
+    running += weight;
+    if (running >= half) return Math.max(-2 * tolerancePpm, Math.min(2 * tolerancePpm, value));
+  }
+  return 0;
 }
 
 function lowerBound(found: readonly Weighed[], value: number): number {
