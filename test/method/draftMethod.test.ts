@@ -136,6 +136,12 @@ describe('listedFromMultiplets', () => {
     ]);
   });
 
+  it('prefers small counts where the areas do not decide', () => {
+    // 5 : 6 would fit better; one nucleus each with areas a fifth apart is far more likely.
+    const found = [100, 120].map((area, index) => ({ shiftPpm: 2 - index, area, pattern: 's' }));
+    expect(listedFromMultiplets(found).map(({ nuclei }) => nuclei)).toEqual([1, 1]);
+  });
+
   it('takes a pattern that cannot be read for a multiplet', () => {
     expect(listedFromMultiplets([{ shiftPpm: 7.2, area: 1, pattern: 'dd', couplingsHz: [8] }])[0]!.pattern.text).toBe('m');
     expect(listedFromMultiplets([])).toEqual([]);

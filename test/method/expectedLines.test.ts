@@ -1,6 +1,8 @@
+import { readFileSync } from 'node:fs';
 import { describe, expect, it } from 'vitest';
 import { coupledSignals, expectedLines } from '../../src/method/expectedLines.js';
 import { firstOrderLines } from '../../src/pattern/firstOrderLines.js';
+import { lorentzSum } from '../../src/pattern/lorentzSum.js';
 import { speciesOf } from './speciesOf.js';
 
 const ethyl = speciesOf({ OCH2: '4.12 (q, J = 7.1 Hz, 2H)', CH3: '1.25 (t, J = 7.1 Hz, 3H)', acetyl: '2.04 (s, 3H)' });
@@ -53,6 +55,29 @@ describe('expectedLines', () => {
     });
     const lines = expectedLines(given, 4000).get('a')!;
     expect(lines.filter((line) => line.share > 0.01)).toHaveLength(2);
+  });
+
+  it("solves a listed phenyl group as AA'BB'C, agreeing with a plain diagonalisation", () => {
+    const phenyl = speciesOf({
+      o: { listed: `${482 / 60} (d, J = 7.7 Hz, 2H)`, coupled: { m: 7.7 }, cross: [0.6, 2.0] },
+      m: { listed: `${446 / 60} (t, J = 7.6 Hz, 2H)`, coupled: { p: 7.5 }, cross: [0.6, 1.5] },
+      p: `${454 / 60} (t, J = 7.5 Hz, 1H)`,
+    });
+    const drawn = [...expectedLines(phenyl, 60)].flatMap(([id, lines]) => {
+      const { shiftPpm, nuclei } = phenyl.signals.find((signal) => signal.id === id)!;
+      return lines.map(({ offsetHz, share }) => ({ offsetHz: shiftPpm * 60 + offsetHz, share: nuclei * share }));
+    });
+    // Source: test/reference/pattern/diagonalise.py; its J(ortho, para) of 1.3 Hz is the default here.
+    const text = readFileSync(new URL('../reference/pattern/spinSystems.json', import.meta.url), 'utf8');
+    const reference = (JSON.parse(text)["AA'BB'C phenyl"].lines as [number, number][]).map(([offsetHz, share]) => ({
+      offsetHz,
+      share,
+    }));
+    let worst = 0;
+    for (let at = 430; at < 500; at += 0.1)
+      worst = Math.max(worst, Math.abs(lorentzSum(drawn, 0.5, at) - lorentzSum(reference, 0.5, at)));
+    const tallest = Math.max(...Array.from({ length: 700 }, (_, index) => lorentzSum(reference, 0.5, 430 + index / 10)));
+    expect(worst / tallest).toBeLessThan(2e-3);
   });
 
   it('solves a symmetric molecule for one of its equal halves', () => {

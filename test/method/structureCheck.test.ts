@@ -121,6 +121,14 @@ describe('structureCheck', () => {
     expect(contradictions(report).map(({ signal }) => signal)).toEqual(['ester/a', 'ester/b']);
   });
 
+  it('tells groups of one count by their patterns where the shifts would mislead', () => {
+    // The quartet is the OCH2 although its shift lies as near to the estimate of the other CH2.
+    const report = check('CCOC(=O)CCC', { a: '3.15 (q, J = 7.1 Hz, 2H)', b: '3.05 (t, J = 7.4 Hz, 2H)' });
+    expect(report.matches.map(({ labels }) => labels)).toEqual([['OCH2'], ['COCH2']]);
+    const turned = check('CCOC(=O)CCC', { a: '3.05 (q, J = 7.1 Hz, 2H)', b: '3.15 (t, J = 7.4 Hz, 2H)' });
+    expect(turned.matches.map(({ labels }) => labels)).toEqual([['OCH2'], ['COCH2']]);
+  });
+
   it('remarks on patterns that need an exchangeable proton or a stereocentre, without contradicting them', () => {
     const coupledOh = check('OCC', { CH2: '3.44 (dq, J = 5.1, 7.0 Hz, 2H)' });
     expect(coupledOh.flags.map(({ code, weight }) => [code, weight])).toEqual([['structure-note', 'note']]);
