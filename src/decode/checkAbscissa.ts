@@ -34,7 +34,7 @@ export function checkAbscissa(state: TableState, plan: AbscissaPlan): Result<Fla
   if (!delta.ok) return delta;
   const spacing = checkFactor(plan, step, intervals);
   if (!spacing.ok) return spacing;
-  const common = [...delta.value, ...spacing.value];
+  const common = [...delta.value, ...spacing.value, ...extremesFlag(plan)];
   const wrong = firstMisplaced(state, plan, step);
   if (!wrong) return ok([...common, ...beginFlag(state, plan, step), ...coarseFlag(state, step / factor)]);
   if (onlyCounts(state, plan, step))
@@ -116,6 +116,16 @@ function beginFlag(state: TableState, plan: AbscissaPlan, step: number): Flag[] 
   if (Math.abs(abscissa - expected) <= allowed) return [];
   const text = `the table starts at abscissa ${abscissa}, FIRST says ${Number(expected.toPrecision(9))}, which is used`;
   return [tolerated('jcamp-first-abscissa', text)];
+}
+
+/** MIN and MAX of the abscissa are its ends; FIRST and LAST are the ones that the table bears out. */
+function extremesFlag({ first, last, min, max }: AbscissaPlan): Flag[] {
+  const [low, high] = first.value < last.value ? [first, last] : [last, first];
+  const differs = (stated: AbscissaPlan['min'], end: AbscissaPlan['first']) =>
+    stated !== undefined && Math.abs(stated.value - end.value) > (stated.roundingLoose + end.roundingLoose) * 1.001;
+  if (!differs(min, low) && !differs(max, high)) return [];
+  const text = `MIN and MAX of the abscissa are not its ends ${low.value} and ${high.value}; FIRST and LAST are used`;
+  return [tolerated('jcamp-extremes-header', text)];
 }
 
 function coarseFlag(state: TableState, stepCount: number): Flag[] {

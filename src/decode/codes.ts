@@ -78,7 +78,11 @@ export const jcampCodes = [
     kind: 'note',
     meaning: 'a first, last, smallest or largest ordinate in the header is slightly off',
   },
-  { code: 'jcamp-extremes-header', kind: 'note', meaning: 'MIN and MAX are empty, or those of another page' },
+  {
+    code: 'jcamp-extremes-header',
+    kind: 'note',
+    meaning: 'MIN and MAX are empty, those of another page, or not the ends of the axis',
+  },
   { code: 'jcamp-time-zone-missing', kind: 'note', meaning: 'the time of acquisition has no zone and is taken as UTC' },
   { code: 'jcamp-date-unreadable', kind: 'flag', meaning: 'a date is not understood or day and month cannot be told apart' },
   { code: 'jcamp-value-unreadable', kind: 'note', meaning: 'an optional header value is not understood and was passed over' },

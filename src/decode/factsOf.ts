@@ -1,6 +1,6 @@
 import { ok, type Result } from '../base/result.js';
 import type { Acquisition, ShiftReference } from './acquisition.js';
-import { type Header, headerNumber, headerText, optionalNumber } from './headerOf.js';
+import { type Header, headerNumber, headerText, numberOf, optionalNumber } from './headerOf.js';
 import { refuse, shown, tolerated } from './jcampProblem.js';
 import { parseNumber } from './parseNumber.js';
 import { plainLabel } from './walkRecords.js';
@@ -81,29 +81,29 @@ function modeOf(header: Header): Acquisition['acquisitionMode'] {
   return text.startsWith('SINGLE') ? 'single' : undefined;
 }
 
-/** `INTERNAL, CDCl3, 1, 15.47`: place, compound (may hold commas, as in names), 1-based point, shift. */
+/**
+ * `INTERNAL, CDCl3, 1, 15.47`: place, compound, 1-based point, shift.
+ *
+ * Where blanks follow the separating commas, others belong to a compound's name or are decimal ones; without blanks there must be
+ * exactly four entries.
+ */
 function shiftReferenceOf(header: Header): ShiftReference | undefined {
-  const text = headerText(header, '.SHIFTREFERENCE');
-  if (text === undefined) return undefined;
-  const words = text
-    .replace(/^\(|\)$/g, '')
-    .split(',')
-    .map((word) => word.trim());
-  const [place = '', ...rest] = words;
-  const [point = '', shift = ''] = rest.splice(-2);
-  const compound = rest.join(',');
-  const [pointNumber, shiftPpm] = [parseNumber(point), parseNumber(shift)];
-  if (words.length < 4 || typeof pointNumber === 'string' || typeof shiftPpm === 'string') {
+  const record = header.records.get('.SHIFTREFERENCE');
+  const text = headerText(header, '.SHIFTREFERENCE')?.replace(/^\(|\)$/g, '');
+  if (!record || text === undefined) return undefined;
+  const spaced = text.split(/,\s+/).map((word) => word.trim());
+  const words = spaced.length === 4 ? spaced : text.split(',').map((word) => word.trim());
+  const [place = '', compound = '', point = '', shift = ''] = words;
+  const pointNumber = parseNumber(point);
+  const shiftPpm = words.length === 4 ? numberOf(header, record, shift) : undefined;
+  const isUsable = typeof pointNumber !== 'string' && Number.isInteger(pointNumber.value) && pointNumber.value >= 0;
+  if (!isUsable || !shiftPpm?.ok) {
     header.flags.push(tolerated('jcamp-value-unreadable', `##.SHIFT REFERENCE= "${shown(text)}" is not understood; passed over`));
     return undefined;
   }
   const written = place.toLowerCase();
-  return {
-    place: written === 'internal' || written === 'external' ? written : 'unknown',
-    compound,
-    pointNumber: pointNumber.value,
-    shiftPpm: shiftPpm.value,
-  };
+  const known = written === 'internal' || written === 'external' ? written : 'unknown';
+  return { place: known, compound, pointNumber: pointNumber.value, shiftPpm: shiftPpm.value.value };
 }
 
 function privateRecordsOf(header: Header, names: readonly string[]): Readonly<Record<string, string>> | undefined {

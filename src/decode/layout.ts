@@ -22,6 +22,8 @@ export interface AbscissaPlan {
   readonly last: HeaderNumber;
   readonly factor: HeaderNumber;
   readonly delta?: HeaderNumber;
+  readonly min?: HeaderNumber;
+  readonly max?: HeaderNumber;
 }
 
 /** Where the numbers of a block lie and what must hold of them. */

@@ -129,5 +129,7 @@ function abscissaOf(header: Header, index: number, entries: Entries, kind: 'fid'
   }
   const delta = headerText(header, 'DELTAX') === undefined ? ok(undefined) : headerNumber(header, 'DELTAX');
   if (!delta.ok) return delta;
-  return ok({ ...unit.value, first, last, factor, ...(delta.value ? { delta: delta.value } : {}) });
+  const [min, max] = (['MIN', 'MAX'] as const).map((label) => entries.get(label)?.[index]);
+  const optional = { ...(delta.value ? { delta: delta.value } : {}), ...(min ? { min } : {}), ...(max ? { max } : {}) };
+  return ok({ ...unit.value, first, last, factor, ...optional });
 }

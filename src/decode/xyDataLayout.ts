@@ -42,12 +42,18 @@ function abscissaOf(header: Header, kind: 'fid' | 'spectrum'): Result<AbscissaPl
   if (!factor.ok) return factor;
   const delta = headerNumber(header, 'DELTAX');
   if (!delta.ok) return delta;
+  const min = headerNumber(header, 'MINX');
+  if (!min.ok) return min;
+  const max = headerNumber(header, 'MAXX');
+  if (!max.ok) return max;
   return ok({
     ...unit.value,
     first: first.value,
     last: last.value,
     factor: factor.value,
     ...(delta.value ? { delta: delta.value } : {}),
+    ...(min.value ? { min: min.value } : {}),
+    ...(max.value ? { max: max.value } : {}),
   });
 }
 

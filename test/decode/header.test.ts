@@ -182,6 +182,24 @@ describe('the header', () => {
   });
 
   it.each([
+    ['INTERNAL, CDCl3, 1, 8,914285', 'CDCl3', 8.914285],
+    ['INTERNAL,CDCl3,1,8.914285', 'CDCl3', 8.914285],
+    ['INTERNAL, 2,2-dimethyl-2-silapentane, 1, 0', '2,2-dimethyl-2-silapentane', 0],
+    ['INTERNAL,CDCl3,1,8,914285', undefined, undefined],
+    ['INTERNAL, CDCl3, 1, 8,914', undefined, undefined],
+    ['INTERNAL, CDCl3, 1.5, 8.9', undefined, undefined],
+  ])('reads the shift reference %s, or passes it over', (text, compound, shiftPpm) => {
+    const { shiftReference, flags } = decoded(changed(fid, '##ORIGIN=', `##.SHIFT REFERENCE= ${text}\n##ORIGIN=`));
+    expect([shiftReference?.compound, shiftReference?.shiftPpm]).toEqual([compound, shiftPpm]);
+    expect(flags.length > 0).toBe(shiftReference === undefined || text.includes('8,'));
+  });
+
+  it('notes extremes of the abscissa that are not its ends', () => {
+    expect(flagCodes(decoded(changed(spectrum, '##NPOINTS', '##MAXX= 4801.56\n##MINX= -800.26\n##NPOINTS')))).toEqual([]);
+    expect(flagCodes(decoded(changed(spectrum, '##NPOINTS', '##MAXX= 4901.56\n##NPOINTS')))).toEqual(['jcamp-extremes-header']);
+  });
+
+  it.each([
     ['MILLISECONDS', 1e-3],
     ['s', 1],
     ['us', 1e-6],

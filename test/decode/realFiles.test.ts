@@ -3,7 +3,7 @@ import { join } from 'node:path';
 import { describe, expect, it } from 'vitest';
 import type { Acquisition } from '../../src/decode/acquisition.js';
 import { decodeJcamp } from '../../src/decode/decodeJcamp.js';
-import { dataFolder, fileBytes, flagCodes, single, unwrap } from './sampleFile.js';
+import { dataFolder, decoded, decodeText, fileBytes, flagCodes, single, unwrap } from './sampleFile.js';
 
 interface TableSummary {
   readonly points: number;
@@ -125,6 +125,26 @@ describe('real files', () => {
         'jcamp-abscissa-counts',
         'jcamp-ordinate-header',
       ],
+    });
+  });
+
+  it.each(names)('%s reads the same with blanks before its labels and other line ends', (name) => {
+    const text = readFileSync(join(dataFolder, name), 'latin1').replaceAll('\r\n', '\n');
+    const { dataSha256 } = read(name);
+    for (const odd of [text.replace(/^##/gm, '  ##').replaceAll('\n', '\r\n'), text.replaceAll('\n', '\r')])
+      expect(decoded(odd).dataSha256).toBe(dataSha256);
+  });
+
+  it.each(names)('%s with a decimal comma in any header line is understood or refused', (name) => {
+    const lines = readFileSync(join(dataFolder, name), 'latin1').split('\n');
+    const { dataSha256 } = read(name);
+    lines.forEach((line, index) => {
+      const at = line.indexOf('=');
+      if (!line.startsWith('##') || !/\d\.\d/.test(line.slice(at)) || /TITLE|JCAMP|DATE/.test(line)) return;
+      const changed = line.slice(0, at) + line.slice(at).replace(/(\d)\.(\d)/g, '$1,$2');
+      const result = decodeText(lines.with(index, changed).join('\n'));
+      if (result.ok) expect(result.value.dataSha256, line).toBe(dataSha256);
+      else expect(['jcamp-comma-ambiguous', 'jcamp-list-length'], line).toContain(result.problem.code);
     });
   });
 });
