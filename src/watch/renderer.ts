@@ -1,0 +1,22 @@
+import type { Result } from '../base/result.js';
+import type { Path } from '../record/filePort.js';
+import type { LedgerLine } from '../record/ledgerLine.js';
+
+/** A run for the page that shows all runs. */
+export interface RunOnIndex {
+  readonly run: string;
+  /** Names from the output folder down. */
+  readonly names: readonly Buffer[];
+  readonly folder: Path;
+  readonly lines: readonly LedgerLine[];
+}
+
+export type DerivedFiles = ReadonlyMap<string, Uint8Array>;
+
+/** Makes the derived files of a run from its record alone. */
+export interface Renderer {
+  /** File name to bytes; `undefined` when the record holds nothing to derive from. */
+  derive(folder: Path, lines: readonly LedgerLine[]): Promise<Result<DerivedFiles | undefined>>;
+  /** The page of all runs. */
+  index?(runs: readonly RunOnIndex[]): Promise<Result<Uint8Array>>;
+}
