@@ -7,6 +7,7 @@ import { exitCodes } from './exitCodes.js';
 import { printProblem } from './printProblem.js';
 import { loadMethod } from './readInput.js';
 import { escapeForTerminal } from './terminalText.js';
+import { tubeBackground } from './tubeBackground.js';
 
 interface CheckArguments {
   method: string;
@@ -55,7 +56,8 @@ async function check(args: ArgumentsCamelCase<CheckArguments>): Promise<number> 
   }
   const method = await loadMethod(args.method);
   if (!method.ok) return method.problem;
-  const report = checkMethod(method.value, fields, args.width);
+  const background = tubeBackground(method.value.nucleus, method.value.solvent);
+  const report = checkMethod(method.value, fields, args.width, background);
   for (const problem of report.problems) printProblem({ ...problem, where: { ...problem.where, file: args.method } });
   if (args.html !== undefined) {
     const written = await writePage(args.html, checkPage(report));

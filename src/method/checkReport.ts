@@ -5,6 +5,7 @@ import { type PatternPeak, patternPeaks } from '../pattern/patternPeaks.js';
 import { printPattern } from '../pattern/printPattern.js';
 import { type BackgroundSignal, type Collision, findCollisions, fitInflation } from './collisions.js';
 import { type CouplingNetwork, couplingNetwork } from './couplingNetwork.js';
+import { couplingRemarks } from './couplingRemarks.js';
 import { expectedLines } from './expectedLines.js';
 import type { Method, MethodSignal, MethodSpecies, Use } from './method.js';
 import { type StructureMatch, type StructureReport, structureCheck } from './structureCheck.js';
@@ -82,7 +83,7 @@ export function checkMethod(
 ): CheckReport {
   const structures = method.species.map((species) => structureCheck(species, method.nucleus));
   const reports = structures.map((result) => (result.ok ? result.value : undefined));
-  const contradictions = method.species.flatMap(couplingFlags);
+  const contradictions = method.species.flatMap(couplingRemarks);
   const flags = [...contradictions, ...reports.flatMap((report) => report?.flags ?? [])];
   const isNote = (flag: Flag) => (flag.weight === 'note' ? 1 : 0);
   const element = method.nucleus.replace(/^\d+/, '');
@@ -160,19 +161,4 @@ function partnersOf(network: CouplingNetwork, id: string): CheckedSignal['partne
 function printSignal(signal: MethodSignal, element: string): string {
   const shift = signal.rangePpm !== undefined ? `${signal.rangePpm[1]}-${signal.rangePpm[0]}` : `${signal.shiftPpm}`;
   return `${shift} (${printPattern(signal.pattern)}, ${signal.nuclei}${element})`;
-}
-
-function couplingFlags(species: MethodSpecies): Flag[] {
-  const { contradictions, ambiguous } = couplingNetwork(species);
-  const keyOf = (id: string) => species.signals.find((signal) => signal.id === id)!.key;
-  return [
-    ...contradictions.map(({ a, b, couplingHz }): Flag => {
-      const message = `coupled: ${keyOf(a)} and ${keyOf(b)} with ${couplingHz} Hz does not agree with the patterns and counts listed for them; the listed patterns are used as they stand`;
-      return { code: 'coupling-contradicted', message, signal: keyOf(a) };
-    }),
-    ...ambiguous.map((id): Flag => {
-      const message = `${keyOf(id)} could couple to more than one signal; name its partner with \`coupled\` to have its pattern computed exactly`;
-      return { code: 'coupling-ambiguous', message, signal: keyOf(id), weight: 'note' };
-    }),
-  ];
 }

@@ -9,6 +9,8 @@ export type Hint = 'neighbours' | 'apart' | 'unknown';
 /** ppm: a match further from the estimate than this says nothing. */
 const trustedPpm = 1.2;
 
+const known = new WeakMap<MethodSpecies, (a: number, b: number) => Hint>();
+
 /**
  * Asks the structure of a species which of its signals couple. Only signals that are one group of protons each, with a fitting
  * pattern near the estimated shift, get an answer.
@@ -17,6 +19,14 @@ const trustedPpm = 1.2;
  * @returns a question: indices of two signals -> answer
  */
 export function structureHints(species: MethodSpecies): (a: number, b: number) => Hint {
+  const before = known.get(species);
+  if (before !== undefined) return before;
+  const hints = ask(species);
+  known.set(species, hints);
+  return hints;
+}
+
+function ask(species: MethodSpecies): (a: number, b: number) => Hint {
   const read = species.smiles === undefined ? undefined : readStructure(species.smiles);
   if (read === undefined || !read.ok) return () => 'unknown';
   const { groups } = read.value;

@@ -69,6 +69,14 @@ describe('check', () => {
     expect(err).toBe('');
   });
 
+  it("counts the residual solvent and water of the method's solvent", async () => {
+    const aromatic = goodMethod
+      .replace('4.14 (q, J = 7.1 Hz, 2H)', '7.25 (s, 2H)')
+      .replace('smiles: CCOC(=O)CC\n', 'name: any\n');
+    expect(await run(aromatic, '--at', '60')).toBe(0);
+    expect(out).toMatch(/propionate\/OCH2 and residual CDCl3 overlap by \d+ %/);
+  });
+
   it('explains a pattern that contradicts the structure, and ends with 2', async () => {
     expect(await run(goodMethod.replace('4.12 (q,', '4.12 (t,'))).toBe(2);
     expect(out).toContain('the OCH2 of CCOC(C)=O has three neighbours: a quartet is expected, the method lists a triplet');

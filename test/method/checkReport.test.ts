@@ -92,6 +92,13 @@ describe('checkMethod', () => {
     expect(report.flags.map(({ code }) => code)).toEqual(['coupling-contradicted', 'structure-pattern', 'structure-note']);
   });
 
+  it('remarks on neighbours whose listed couplings differ', () => {
+    const ester = species('ester', { OCH2: '4.12 (q, J = 7.1 Hz, 2H)', CH3: '1.25 (t, J = 7.6 Hz, 3H)' }, 'CCOC(C)=O');
+    const report = checkMethod(methodOf([ester]), [400]);
+    expect(report.flags).toMatchObject([{ code: 'coupling-unequal', weight: 'note', signal: 'ester/OCH2' }]);
+    expect(report.flags[0]!.message).toContain('ester/OCH2 lists 7.1 Hz and ester/CH3 7.6 Hz');
+  });
+
   it('names a structure that cannot be read, and goes on', () => {
     const report = checkMethod(methodOf([species('ester', { CH3: '1.25 (s, 3H)' }, 'C(C')]), [400]);
     expect(report.problems.map(({ code }) => code)).toEqual(['smiles-unreadable']);
