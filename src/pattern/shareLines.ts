@@ -1,10 +1,13 @@
+import { Matrix, solve } from 'ml-matrix';
 import type { Line } from './pattern.js';
 import type { SpinLines } from './spinSystem.js';
 import { thinLines } from './thinLines.js';
 
-const turnsMax = 40;
+const turnsMax = 30;
+/** Largest change of the logarithm of a factor in one turn. */
+const stepMax = 1;
 /** The balance is done when no signal's sum is off by more than this, relative: far below any measurement. */
-const balanced = 1e-6;
+const balanced = 1e-9;
 /** Share of a signal below which a line of it is left out. */
 const faintShare = 2e-5;
 /** Intensity, in nuclei, below which a whole line is left out before the balance. */
@@ -44,32 +47,55 @@ export function shareLines(
   );
 }
 
-/** shape (rows x signals) row by row: nuclei of each signal in each line. */
+/**
+ * Finds one factor per signal so that, with every row scaled to its line's intensity, each column sums to its nuclei. The
+ * logarithms of the factors minimise a convex function, so Newton steps find them in a few turns.
+ *
+ * @returns shape (rows x signals) row by row: nuclei of each signal in each line
+ */
 function balance(lines: SpinLines, rows: readonly number[], counts: readonly number[]): Float64Array {
   const width = counts.length;
   const table = new Float64Array(rows.length * width);
-  for (const [index, row] of rows.entries())
-    table.set(lines.ownMoments.subarray(row * width, row * width + width), index * width);
   const kept = rows.reduce((sum, row) => sum + lines.intensity[row]!, 0) / counts.reduce((sum, count) => sum + count, 0);
-  const scale = new Float64Array(width).fill(1);
+  const factors = new Float64Array(width).fill(1);
   for (let turn = 0; turn < turnsMax; turn++) {
-    const sums = new Float64Array(width);
-    for (let index = 0; index < rows.length; index++) {
-      let sum = 0;
-      for (let column = 0; column < width; column++) sum += table[index * width + column]! * scale[column]!;
-      const factor = sum > 0 ? lines.intensity[rows[index]!]! / sum : 0;
-      for (let column = 0; column < width; column++) {
-        const part = table[index * width + column]! * scale[column]! * factor;
-        table[index * width + column] = part;
-        sums[column]! += part;
-      }
-    }
-    let worst = 0;
-    for (let column = 0; column < width; column++) {
-      scale[column] = (counts[column]! * kept) / sums[column]!;
-      worst = Math.max(worst, Math.abs(scale[column]! - 1));
-    }
-    if (worst < balanced) break;
+    const { sums, slopes } = fill(table, lines, rows, factors);
+    const miss = counts.map((count, column) => count * kept - sums[column]!);
+    if (Math.max(...miss.map((value, column) => Math.abs(value) / counts[column]!)) < balanced) break;
+    // Only ratios of factors matter, so the last one stays; a ridge keeps signals that share no line solvable.
+    const free = width - 1;
+    if (free === 0) break;
+    const hessian = Matrix.zeros(free, free);
+    for (let a = 0; a < free; a++)
+      for (let b = 0; b < free; b++) hessian.set(a, b, slopes[a * width + b]! + (a === b ? 1e-9 : 0));
+    const step = solve(hessian, Matrix.columnVector(miss.slice(0, free)));
+    for (let column = 0; column < free; column++)
+      factors[column]! *= Math.exp(Math.max(-stepMax, Math.min(stepMax, step.get(column, 0))));
   }
   return table;
+}
+
+/** Fills the table for given factors; returns its column sums and their derivatives by the logarithms of the factors. */
+function fill(table: Float64Array, lines: SpinLines, rows: readonly number[], factors: Float64Array) {
+  const width = factors.length;
+  const sums = new Float64Array(width);
+  const slopes = new Float64Array(width * width);
+  for (let index = 0; index < rows.length; index++) {
+    const row = rows[index]!;
+    let sum = 0;
+    for (let column = 0; column < width; column++) sum += lines.ownMoments[row * width + column]! * factors[column]!;
+    const scale = sum > 0 ? lines.intensity[row]! / sum : 0;
+    for (let column = 0; column < width; column++) {
+      const part = lines.ownMoments[row * width + column]! * factors[column]! * scale;
+      table[index * width + column] = part;
+      sums[column]! += part;
+      slopes[column * width + column]! += part;
+      for (let other = 0; other <= column; other++) {
+        const both = scale > 0 ? (part * table[index * width + other]!) / lines.intensity[row]! : 0;
+        slopes[column * width + other]! -= both;
+        if (other !== column) slopes[other * width + column]! -= both;
+      }
+    }
+  }
+  return { sums, slopes };
 }
