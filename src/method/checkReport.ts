@@ -8,6 +8,7 @@ import { type CouplingNetwork, couplingNetwork } from './couplingNetwork.js';
 import { couplingRemarks } from './couplingRemarks.js';
 import { expectedLines } from './expectedLines.js';
 import type { Method, MethodSignal, MethodSpecies, Use } from './method.js';
+import { satelliteRemarks } from './satelliteRemarks.js';
 import { type StructureMatch, type StructureReport, structureCheck } from './structureCheck.js';
 
 /** What one signal should look like at one field. */
@@ -84,7 +85,11 @@ export function checkMethod(
   const structures = method.species.map((species) => structureCheck(species, method.nucleus));
   const reports = structures.map((result) => (result.ok ? result.value : undefined));
   const contradictions = method.species.flatMap(couplingRemarks);
-  const flags = [...contradictions, ...reports.flatMap((report) => report?.flags ?? [])];
+  const flags = [
+    ...contradictions,
+    ...reports.flatMap((report) => report?.flags ?? []),
+    ...fieldsMhz.flatMap((observeMhz) => satelliteRemarks(method, observeMhz)),
+  ];
   const isNote = (flag: Flag) => (flag.weight === 'note' ? 1 : 0);
   const element = method.nucleus.replace(/^\d+/, '');
   const inflation = fieldsMhz.map((observeMhz) => fitInflation(method, observeMhz, widthHz));

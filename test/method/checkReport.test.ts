@@ -77,6 +77,19 @@ describe('checkMethod', () => {
     expect(checkMethod(method, [60], 1, [water]).collisions.map(({ a, b }) => [a, b])).toEqual([['a/x', 'water']]);
   });
 
+  it('remarks on a signal where a 13C satellite of another species falls, at the field where it does', () => {
+    // A methoxy group couples by 143 Hz: its satellites lie 71.5 Hz, at 400 MHz 0.179 ppm, on either side.
+    const method = methodOf([species('main', { OCH3: '3.70 (s, 3H)' }), species('trace', { OCH3: '3.88 (s, 3H)' })]);
+    const remarks = checkMethod(method, [400, 60]).flags;
+    expect(remarks.map(({ code, signal, weight }) => [code, signal, weight])).toEqual([
+      ['satellite-near', 'main/OCH3', 'note'],
+      ['satellite-near', 'trace/OCH3', 'note'],
+    ]);
+    expect(remarks[1]!.message).toContain(
+      'at 400 MHz a 13C satellite of main/OCH3 falls on or beside trace/OCH3: it adds up to 0.535 %',
+    );
+  });
+
   it('puts contradictions before remarks', () => {
     const report = checkMethod(
       methodOf([
