@@ -1,14 +1,17 @@
 import { hostname, userInfo } from 'node:os';
 import { programVersion } from '../base/version.js';
 import { type Clock, realClock } from './clock.js';
-import { type FilePort, realFilePort } from './filePort.js';
+import { type FilePort, type Path, realFilePort } from './filePort.js';
 import type { Writer } from './ledgerEntry.js';
+import type { Holder, LockOptions } from './recordLock.js';
 
 /** Everything from outside that the record needs. */
 export interface RecordContext {
   readonly port: FilePort;
   readonly clock: Clock;
   readonly writer: Writer;
+  /** Tests decide who is alive; else the operating system is asked. */
+  readonly isHolderAlive?: (holder: Holder) => boolean;
 }
 
 /** The real disk, clock and user. */
@@ -23,4 +26,10 @@ function userName(): string {
     // A user id without a name, as in many containers.
     return `uid ${process.getuid?.() ?? 'unknown'}`;
   }
+}
+
+/** What `takeLock` needs of a context. */
+export function lockOptions({ port, clock, writer, isHolderAlive }: RecordContext, folder: Path): LockOptions {
+  const nowUtc = new Date(clock.nowMs()).toISOString();
+  return { port, folder, user: writer.user, nowUtc, ...(isHolderAlive !== undefined ? { isHolderAlive } : {}) };
 }

@@ -12,7 +12,8 @@ export type RecordCode =
   | 'object-damaged'
   | 'object-missing'
   | 'record-held'
-  | 'record-missing';
+  | 'record-missing'
+  | 'record-empty';
 
 export function recordProblem(
   code: RecordCode,

@@ -6,7 +6,7 @@ import { type Ledger, ledgerName, openLedger } from './ledger.js';
 import type { EntryBody } from './ledgerEntry.js';
 import type { LedgerLine } from './ledgerLine.js';
 import { pointsFolder, rawFolder } from './objectStore.js';
-import type { RecordContext } from './recordContext.js';
+import { lockOptions, type RecordContext } from './recordContext.js';
 import { type RecordLock, takeLock } from './recordLock.js';
 import { outputProblem, systemCode } from './recordProblem.js';
 
@@ -37,7 +37,7 @@ export interface HoldOptions {
  */
 export async function holdRecord(options: HoldOptions): Promise<Result<HeldRecord>> {
   const { context, outputFolder, names } = options;
-  const { port, clock, writer } = context;
+  const { port } = context;
   let folder: Path;
   try {
     folder = await makeFolders(port, outputFolder, names);
@@ -46,7 +46,7 @@ export async function holdRecord(options: HoldOptions): Promise<Result<HeldRecor
   } catch (cause) {
     return { ok: false, problem: outputProblem(cause, pathText(joinPath(outputFolder, ...names))) };
   }
-  const lock = await takeLock({ port, folder, user: writer.user, nowUtc: new Date(clock.nowMs()).toISOString() });
+  const lock = await takeLock(lockOptions(context, folder));
   if (!lock.ok) return lock;
   const opened = await openLocked(options, folder, lock.value);
   if (!opened.ok) {

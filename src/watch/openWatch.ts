@@ -2,7 +2,7 @@ import { dirname, relative, resolve, sep } from 'node:path';
 import { fail, ok, type Problem, type Result } from '../base/result.js';
 import { makeFolders } from '../record/durable.js';
 import type { FilePort } from '../record/filePort.js';
-import type { RecordContext } from '../record/recordContext.js';
+import { lockOptions, type RecordContext } from '../record/recordContext.js';
 import { type RecordLock, takeLock } from '../record/recordLock.js';
 import { outputProblem, systemCode } from '../record/recordProblem.js';
 import type { Renderer } from './renderer.js';
@@ -38,8 +38,7 @@ export async function openWatch(parts: WatchParts): Promise<Result<OpenWatch>> {
   if (!apart.ok) return apart;
   const made = await makeOutput(context.port, settings.outputFolder);
   if (!made.ok) return made;
-  const nowUtc = new Date(context.clock.nowMs()).toISOString();
-  const lock = await takeLock({ port: context.port, folder: settings.outputFolder, user: context.writer.user, nowUtc });
+  const lock = await takeLock(lockOptions(context, settings.outputFolder));
   if (!lock.ok) return lock;
   return ok(begin(parts, lock.value));
 }
@@ -52,6 +51,7 @@ function begin(parts: WatchParts, lock: RecordLock): OpenWatch {
     runs: new Map(),
     unfinished: new Map(),
     renderedMs: new Map(),
+    series: new Map(),
     skippedTold: new Set(),
     isLastPass: false,
   };

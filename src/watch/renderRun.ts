@@ -38,10 +38,11 @@ export async function renderRun(session: WatchSession, held: HeldRecord, hasMore
   if (!derived.ok) return derived;
   if (derived.value === undefined) return ok(undefined);
   session.renderedMs.set(key, now);
+  if (derived.value.series !== undefined) session.series.set(key, derived.value.series);
   const { port } = session.context;
   const hashes: Record<string, string> = {};
   try {
-    for (const [name, bytes] of derived.value) {
+    for (const [name, bytes] of derived.value.files) {
       hashes[name] = sha256(bytes);
       const present = await readWhole(port, joinPath(held.folder, name));
       if (present === undefined || sha256(present) !== hashes[name]) await replaceFile(port, held.folder, name, bytes);

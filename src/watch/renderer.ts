@@ -1,6 +1,7 @@
 import type { Result } from '../base/result.js';
 import type { Path } from '../record/filePort.js';
 import type { LedgerLine } from '../record/ledgerLine.js';
+import type { Series } from '../series/series.js';
 
 /** A run for the page that shows all runs. */
 export interface RunOnIndex {
@@ -11,12 +12,17 @@ export interface RunOnIndex {
   readonly lines: readonly LedgerLine[];
 }
 
-export type DerivedFiles = ReadonlyMap<string, Uint8Array>;
+export interface Derived {
+  /** File name to bytes. */
+  readonly files: ReadonlyMap<string, Uint8Array>;
+  /** What the files show; absent in tests with a stand-in. */
+  readonly series?: Series;
+}
 
 /** Makes the derived files of a run from its record alone. */
 export interface Renderer {
-  /** File name to bytes; `undefined` when the record holds nothing to derive from. */
-  derive(folder: Path, lines: readonly LedgerLine[]): Promise<Result<DerivedFiles | undefined>>;
+  /** `undefined` when the record holds nothing to derive from. */
+  derive(folder: Path, lines: readonly LedgerLine[]): Promise<Result<Derived | undefined>>;
   /** The page of all runs. */
   index?(runs: readonly RunOnIndex[]): Promise<Result<Uint8Array>>;
 }

@@ -3,6 +3,7 @@ import type { SiteFile } from '../method/site.js';
 import type { Path } from '../record/filePort.js';
 import type { RecordContext } from '../record/recordContext.js';
 import type { Renderer } from './renderer.js';
+import type { Series } from '../series/series.js';
 import type { RunMemory } from './runMemory.js';
 import type { Settling } from './settling.js';
 import type { ShareReader } from './shareReader.js';
@@ -59,6 +60,8 @@ export interface WatchSession {
   readonly unfinished: Map<string, string>;
   /** When each run was last rendered, by the monotonic clock. */
   readonly renderedMs: Map<string, number>;
+  /** The series as last derived, by run folder. */
+  readonly series: Map<string, Series>;
   /** Links that were already told about. */
   readonly skippedTold: Set<string>;
   /** Set in the last turn of a single pass: what still changes is set down as incomplete. */
