@@ -86,7 +86,7 @@ describe('checkMethod', () => {
       ['satellite-near', 'trace/OCH3', 'note'],
     ]);
     expect(remarks[1]!.message).toContain(
-      'at 400 MHz a 13C satellite of main/OCH3 falls on or beside trace/OCH3: it adds up to 0.535 %',
+      'at 400 MHz a 13C satellite of main/OCH3 falls on or beside it, up to 0.535 % of that signal',
     );
   });
 
