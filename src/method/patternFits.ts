@@ -28,6 +28,9 @@ export function patternFits(pattern: Pattern, group: StructureGroup, groups: rea
   const plain = unitsOf(group, groups, false);
   if (canForm(factors, plain)) return { fits: true };
   if (pattern.isBroad && factors.length === 0) return { fits: true, condition: 'unresolved' };
+  const isRing = [group, ...neighboursOf(group, groups)].some((one) => one.isInSaturatedRing);
+  // Couplings in a ring go by angle and may all be small: cyclopentene shows its alkene protons as a singlet.
+  if (isRing && factors.length === 0) return { fits: true, condition: 'uneven' };
   if (isUneven(group, groups) && factors.length > 0) {
     const loose = plain.map((unit) => ({ ...unit, isRequired: false }));
     const single = loose.flatMap(({ count }) => Array.from({ length: count }, () => ({ count: 1, isRequired: false })));
@@ -38,8 +41,11 @@ export function patternFits(pattern: Pattern, group: StructureGroup, groups: rea
 }
 
 function isUneven(group: StructureGroup, groups: readonly StructureGroup[]): boolean {
-  const around = group.neighbours.flatMap((neighbour) => (neighbour.group === undefined ? [] : [groups[neighbour.group]!]));
-  return [group, ...around].some((one) => one.isDiastereotopic || one.isInSaturatedRing);
+  return [group, ...neighboursOf(group, groups)].some((one) => one.isDiastereotopic || one.isInSaturatedRing);
+}
+
+function neighboursOf(group: StructureGroup, groups: readonly StructureGroup[]): StructureGroup[] {
+  return group.neighbours.flatMap((neighbour) => (neighbour.group === undefined ? [] : [groups[neighbour.group]!]));
 }
 
 function unitsOf(group: StructureGroup, groups: readonly StructureGroup[], withExchanging: boolean): Unit[] {

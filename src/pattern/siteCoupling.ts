@@ -50,7 +50,10 @@ function protonCoupling(
     return carbonsOnly && isUnsaturated ? { kind: 'long', usualHz: kinds.includes('alkyne') ? 2.6 : 1.6 } : undefined;
   }
   const [left, right] = kinds;
-  if (left === 'aromatic' && right === 'aromatic') return { kind: 'clear', usualHz: 7.8 };
+  if (left === 'aromatic' && right === 'aromatic') {
+    // Furan, pyrrole, thiophene, azoles: 1 to 5 Hz, often not resolved.
+    return ringSize(molecule, path[0]!, path[1]!) === 5 ? { kind: 'small', usualHz: 3 } : { kind: 'clear', usualHz: 7.8 };
+  }
   if (left === 'alkene' && right === 'alkene') {
     const bond = molecule.adjacent[path[0]!]!.find(([other]) => other === path[1])?.[1];
     if (bond !== undefined && molecule.bonds[bond]!.order === 1) return { kind: 'clear', usualHz: 10.8 };
@@ -61,4 +64,23 @@ function protonCoupling(
     return kinds.includes('sp3') ? { kind: 'small', usualHz: 1.8 } : { kind: 'clear', usualHz: 7.8 };
   if (left === 'imine' || right === 'imine') return { kind: 'small', usualHz: 5 };
   return { kind: 'clear', usualHz: kinds.includes('alkene') ? 6.8 : 7.1 };
+}
+
+/** Atoms in the smallest ring that holds a bond; 0 when none does. */
+function ringSize(molecule: Molecule, a: number, b: number): number {
+  const seen = new Set([a]);
+  let front = [a];
+  for (let size = 2; front.length > 0; size++) {
+    const next: number[] = [];
+    for (const atom of front) {
+      for (const [other] of molecule.adjacent[atom]!) {
+        if ((atom === a && other === b) || seen.has(other)) continue;
+        if (other === b) return size;
+        seen.add(other);
+        next.push(other);
+      }
+    }
+    front = next;
+  }
+  return 0;
 }
