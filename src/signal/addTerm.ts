@@ -63,18 +63,27 @@ export function addTerm(term: Term, state: TermState, axis: TermAxis, columns: T
   const { value, byShift, byLogWidth, byPhase, byLorentzShare, byCoupling } = columns;
   for (const column of [value, byShift, byLogWidth, byPhase, byLorentzShare, ...byCoupling]) column.fill(0);
   const lineShift = new Float64Array(value.length);
-  for (const { offsetHz, share, perCoupling } of term.lines) {
+  for (const { offsetHz, share, perCoupling, extraWidthHz = 0 } of term.lines) {
     let place = state.shiftHz + offsetHz;
     for (let k = 0; k < perCoupling.length; k += 1) place += perCoupling[k]! * state.couplings[k]!;
-    addLine(place, share, state, axis, columns, lineShift);
+    addLine({ place, share, extraWidthHz }, state, axis, columns, lineShift);
     addScaled(byShift, lineShift, 1);
     for (let k = 0; k < perCoupling.length; k += 1) addScaled(byCoupling[k]!, lineShift, perCoupling[k]!);
   }
 }
 
-function addLine(place: number, share: number, state: TermState, axis: TermAxis, columns: TermColumns, lineShift: Float64Array) {
+function addLine(
+  { place, share, extraWidthHz }: { readonly place: number; readonly share: number; readonly extraWidthHz: number },
+  state: TermState,
+  axis: TermAxis,
+  columns: TermColumns,
+  lineShift: Float64Array,
+): void {
   const { value, byLogWidth, byPhase, byLorentzShare } = columns;
-  const { widthHz, lorentzShare } = state;
+  const { lorentzShare } = state;
+  const widthHz = state.widthHz + extraWidthHz;
+  // d(width + extra)/dlog(width) is the width alone.
+  const perLogWidth = state.widthHz / widthHz;
   const cosine = Math.cos(state.phase);
   const sine = Math.sin(state.phase);
   const decay = Math.PI * widthHz;
@@ -114,7 +123,7 @@ function addLine(place: number, share: number, state: TermState, axis: TermAxis,
     value[i] = value[i]! + share * (cosine * absorption - sine * sIm);
     // dS/df = -2 pi i dS/dz.
     lineShift[i] = share * (cosine * absorptionShift + sine * 2 * Math.PI * zRe);
-    byLogWidth[i] = byLogWidth[i]! + share * (cosine * absorptionWidth - sine * decay * zIm);
+    byLogWidth[i] = byLogWidth[i]! + share * perLogWidth * (cosine * absorptionWidth - sine * decay * zIm);
     byPhase[i] = byPhase[i]! - share * (sine * absorption + cosine * sIm);
   }
 }

@@ -1,3 +1,4 @@
+import { type LineComponent, withComponents } from './lineComponents.js';
 import type { Located } from './locateSignals.js';
 import type { Parameter, RegionModel, Term } from './regionModel.js';
 import type { Target } from './signalTargets.js';
@@ -5,6 +6,9 @@ import type { Target } from './signalTargets.js';
 /** The line shape that the lines of one spectrum share. */
 export interface SharedShape {
   readonly widthHz: number;
+  readonly components: readonly LineComponent[];
+  /** Relative misfit that the best shape still leaves on strong lines. */
+  readonly misfit: number;
   /** Standard deviation of the log width from line to line. */
   readonly logWidthSigma: number;
   readonly lorentzShare: number;
@@ -57,7 +61,14 @@ export function buildRegionModel(
       add('coupling', 0, isPresent ? couplingSigmaHz : 0, -couplingReachHz, couplingReachHz),
     );
     const hasCouplings = target.lines.every((line) => line.perCoupling.length === couplings.length);
-    return { key: target.key, lines: target.lines, shift, widths, phase, couplings: hasCouplings ? couplings : [] };
+    return {
+      key: target.key,
+      lines: withComponents(target.lines, shape.components),
+      shift,
+      widths,
+      phase,
+      couplings: hasCouplings ? couplings : [],
+    };
   });
-  return { terms, parameters, lorentzShare };
+  return { terms, parameters, lorentzShare, components: shape.components };
 }

@@ -1,14 +1,15 @@
 import type { Spectrum } from '../spectrum/spectrum.js';
-import { areaOf } from './areaOf.js';
+import { areaOf, withResidual } from './areaOf.js';
 import type { FittedRegion } from './fitRegions.js';
 import type { MeasuredSignal } from './measured.js';
-import { type Neighbourhood, neighbourhood } from './neighbourhood.js';
+import { misfitOf } from './misfitOf.js';
+import { neighbourhood } from './neighbourhood.js';
 import { plainIntegral } from './plainIntegral.js';
-import { type Rival, rivalPattern } from './rivalPattern.js';
+import { rivalPattern } from './rivalPattern.js';
 import type { Target } from './signalTargets.js';
 import { strangeLines } from './strangeLines.js';
-import { linesOfFit } from './tailsOf.js';
-import { misfitOf, verdictOf } from './verdictOf.js';
+import { sticksOf } from './tailsOf.js';
+import { type Evidence, verdictOf } from './verdictOf.js';
 import type { Whitening } from './whiteningFilter.js';
 
 const presentFactor = 3.3;
@@ -19,6 +20,8 @@ const doubtfulMisfit = 0.04;
 export interface SignalContext {
   readonly spectrum: Spectrum;
   readonly whitening: Whitening;
+  /** Relative misfit of the shared line shape. */
+  readonly misfit: number;
   /** Every region with declared patterns alone, and with extra lines, in the same order. */
   readonly plain: readonly FittedRegion[];
   readonly extra: readonly FittedRegion[];
@@ -42,7 +45,7 @@ export function describeSignal(context: SignalContext, target: Target): Measured
   const t = fit.model.terms.findIndex((term) => term.key === key);
   const term = fit.model.terms[t]!;
   const { area, u, u0 } = areaOf(extra, t);
-  const lines = linesOfFit(fit).filter((line) => line.key === key);
+  const lines = sticksOf(fit).filter((line) => line.key === key);
   const isPresent = isSignificant(area, u, u0);
   const shiftFree = fit.free.indexOf(term.shift);
   const shiftIndex = fit.model.terms.length + 2 + shiftFree;
@@ -52,8 +55,9 @@ export function describeSignal(context: SignalContext, target: Target): Measured
   const judged = verdictOf(spectrum, { extra, target, area, isPresent, isExpected, ...doubt });
   // Where another pattern stands, its area is what is there; the declared one only covers a part of it.
   const other = judged.verdict === 'differs' ? doubt.rival : undefined;
-  const measured = other && judged.found === other.pattern ? areaOf({ ...doubt.near!, fit: other.fit }, 0) : { area, u };
   const isAlone = extra.region.targets.length === 1;
+  const declared = isAlone && isPresent && fit.areas.length === 1 ? withResidual(extra, { area, u }, lines) : { area, u };
+  const measured = other && judged.found === other.pattern ? areaOf({ ...doubt.near!, fit: other.fit }, 0) : declared;
   const widest = lines[0]!.widthHz;
   const high = (Math.max(...lines.map((line) => line.shiftHz)) + 12 * widest) / observeMhz;
   const low = (Math.min(...lines.map((line) => line.shiftHz)) - 12 * widest) / observeMhz;
@@ -84,15 +88,17 @@ export function isSignificant(area: number, u: number, u0: number): boolean {
 }
 
 /** Looks for another pattern where the declared one leaves lines unexplained. */
-function doubtsOf(context: SignalContext, target: Target, isPresent: boolean): { near?: Neighbourhood; rival?: Rival } {
+function doubtsOf(context: SignalContext, target: Target, isPresent: boolean): Pick<Evidence, 'near' | 'rival'> {
   const home = context.plain[context.home]!;
   const isStrong = isPresent || context.extra[context.home]!.fit.areas.length > home.fit.areas.length;
   if (!isStrong) return {};
-  const near = neighbourhood(context.spectrum, context.plain, home, target, context.whitening);
+  const near = neighbourhood(context.spectrum, context.plain, home, target, context);
   const { all, strange } = strangeLines(near);
   if (strange.length === 0 && misfitOf(near, target) < doubtfulMisfit) return {};
   const rival = rivalPattern(near, all);
-  return { near, ...(rival ? { rival } : {}) };
+  const strangeArea = strange.reduce((sum, { area }) => sum + area, 0);
+  const strangeShare = strangeArea / (strangeArea + Math.max(0, near.fit.areas[0]!));
+  return { near: { ...near, strangeShare }, ...(rival ? { rival } : {}) };
 }
 
 function correlations(fitted: FittedRegion, t: number): MeasuredSignal['fittedWith'] {

@@ -2,7 +2,7 @@ import type { Spectrum } from '../spectrum/spectrum.js';
 import type { FittedRegion } from './fitRegions.js';
 import type { Strip } from './measured.js';
 import type { Target } from './signalTargets.js';
-import { linesOfFit } from './tailsOf.js';
+import { sticksOf } from './tailsOf.js';
 
 const pointsMax = 160;
 const marginWidths = 12;
@@ -18,7 +18,7 @@ const sticksMax = 40;
 export function drawStrip(spectrum: Spectrum, fitted: FittedRegion, target: Target): Strip | undefined {
   if (target.signal.use === 'ignore') return undefined;
   const { window, fit } = fitted;
-  const lines = linesOfFit(fit);
+  const lines = sticksOf(fit);
   const own = lines.filter((line) => line.key === target.key);
   const width = own[0]!.widthHz;
   const high = Math.max(...own.map((line) => line.shiftHz)) + marginWidths * width;

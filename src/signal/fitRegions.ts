@@ -43,7 +43,7 @@ export function fitRegions(
       const before = fitted[index];
       // Tails below a fraction of the noise change nothing: the first fit stands.
       if (before !== undefined && !differ(before.window, spectrum, outside)) continue;
-      const window = regionWindow(spectrum, region.from, region.to, whitening, outside);
+      const window = regionWindow(spectrum, { from: region.from, to: region.to, whitening, ...shape, outside });
       const model = before?.fit ? restart(before.fit) : buildRegionModel(region.targets, located, shape, spectrum.observeMhz);
       fitted[index] = { region, window, fit: fitRegion(window, model) };
     }

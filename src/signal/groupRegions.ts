@@ -10,7 +10,9 @@ export interface Region {
 }
 
 /** Points up to this many line widths beside the outermost lines are fitted: the tails beyond hold 0.8 % of a Lorentzian each side. */
-const marginWidths = 20;
+export const wideMargin = 20;
+/** Where the shape of a line is not known to the noise, its far tails say more about the baseline than about the line. */
+export const narrowMargin = 8;
 /** Signals whose lines come closer than this share their tails so much that they are fitted together. */
 const joinWidths = 14;
 
@@ -18,7 +20,8 @@ const joinWidths = 14;
  * Groups the located signals into regions: those whose lines come near each other share one fit.
  *
  * @param located places by key
- * @param widthOf full width at half height expected for a target, Hz
+ * @param widthOf      full width at half height expected for a target, Hz
+ * @param marginWidths line widths fitted beside the outermost lines
  * @returns regions by descending shift; windows may overlap, the tails of one are taken off the other
  * @source  common practice
  */
@@ -27,6 +30,7 @@ export function groupRegions(
   targets: readonly Target[],
   located: ReadonlyMap<string, Located>,
   widthOf: (target: Target) => number,
+  marginWidths = wideMargin,
 ): Region[] {
   const { firstPpm, observeMhz, stepHz, real } = spectrum;
   const spans = targets

@@ -1,19 +1,37 @@
 import type { Spectrum } from '../spectrum/spectrum.js';
 import type { SharedShape } from './buildRegionModel.js';
-import { fitRegions } from './fitRegions.js';
+import { type FittedRegion, fitRegions } from './fitRegions.js';
 import type { Region } from './groupRegions.js';
+import { learnComponents } from './learnComponents.js';
+import { singleComponent } from './lineComponents.js';
 import type { Located } from './locateSignals.js';
+import { detectableMisfit, misfitOf } from './misfitOf.js';
 import type { Whitening } from './whiteningFilter.js';
 
-const loose = { logWidthSigma: 1, phase: 0, phaseSigma: 0.1, lorentzShare: 1, lorentzShareU: 0 };
+const loose = {
+  logWidthSigma: 1,
+  phase: 0,
+  phaseSigma: 0.1,
+  lorentzShare: 1,
+  lorentzShareU: 0,
+  components: singleComponent,
+  misfit: 0,
+};
 const teachersMax = 4;
+/** A pattern that misfits by more is not what was declared, and teaches nothing about the shape of a line. */
+const strainedMisfit = 0.25;
+/** Below this a Lorentzian with its misfit allowed for is safer than a shape of many parts. */
+const plainMisfit = 0.03;
+/** With one signal alone nothing tells shape from impurity: this much is usual for a well-adjusted magnet (common practice). */
+const aloneMisfitMax = 0.005;
 
 /**
- * Learns the line shape of a spectrum from its strongest signals.
+ * Learns the line shape of a spectrum from its strongest signals: a Lorentzian where that fits, else the sum of a few that fits
+ * one strong signal and proves itself on the others.
  *
  * @param guessHz width to start from
- * @returns width (area-weighted middle of the teachers), its spread, Lorentz share and residual phase
- * @source  own; pseudo-Voigt as in G. K. Wertheim et al., Rev. Sci. Instrum. 1974, 45, 1369 (from memory)
+ * @returns width (middle of the teachers), its spread, components and the misfit that stays
+ * @source  own; inhomogeneous line as a sum of shifted Lorentzians (common practice of reference deconvolution, Morris 1988)
  */
 export function learnShape(
   spectrum: Spectrum,
@@ -29,8 +47,38 @@ export function learnShape(
     .sort((a, b) => a.targets.length - b.targets.length || gain(b) - gain(a))
     .slice(0, teachersMax);
   if (teachers.length === 0) return { ...start, logWidthSigma: 0.4 };
-  const fits = fitRegions(spectrum, teachers, located, start, whitening);
-  const widths = fits.map(({ fit }) => fit.values[fit.model.terms[0]!.widths[0]!]!).sort((a, b) => a - b);
-  const middle = widths[Math.floor((widths.length - 1) / 2)]!;
-  return { ...start, widthHz: Math.exp(middle), logWidthSigma: 0.2, phaseSigma: 0.05 };
+  const fits = fitRegions(spectrum, teachers, located, start, whitening).filter((fitted) => worstMisfit(fitted) < strainedMisfit);
+  if (fits.length === 0) return { ...start, logWidthSigma: 0.3, phaseSigma: 0.05 };
+  const plain = { ...start, widthHz: middleWidth(fits), logWidthSigma: 0.2, phaseSigma: 0.05 };
+  const misfit = sharedMisfit(fits);
+  if (misfit < plainMisfit) return { ...plain, misfit };
+  return learnComponents(spectrum, fits, located, plain, whitening) ?? { ...plain, misfit };
+}
+
+/**
+ * The misfit that all strong signals share, and that is therefore the line shape's. One signal that a Lorentzian fits to the
+ * noise proves the shape; what another leaves over is then its own affair. A weak signal proves only what it could have shown.
+ */
+function sharedMisfit(fits: readonly FittedRegion[]): number {
+  let least = { bound: Number.POSITIVE_INFINITY, misfit: 0 };
+  for (const fitted of fits) {
+    const misfit = worstMisfit(fitted);
+    const bound = Math.max(misfit, ...fitted.region.targets.map((target) => detectableMisfit(fitted, target)));
+    if (bound < least.bound) least = { bound, misfit };
+  }
+  return fits.length > 1 ? least.misfit : Math.min(least.misfit, aloneMisfitMax);
+}
+
+/** The largest relative misfit among the signals of a region. */
+export function worstMisfit(fitted: FittedRegion): number {
+  return Math.max(...fitted.region.targets.map((target) => misfitOf(fitted, target)));
+}
+
+function middleWidth(fits: readonly FittedRegion[]): number {
+  return Math.exp(middle(fits.map(({ fit }) => fit.values[fit.model.terms[0]!.widths[0]!]!)));
+}
+
+function middle(values: readonly number[]): number {
+  const sorted = [...values].sort((a, b) => a - b);
+  return sorted[Math.floor((sorted.length - 1) / 2)]!;
 }

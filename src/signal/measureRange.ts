@@ -3,7 +3,7 @@ import type { FittedRegion } from './fitRegions.js';
 import type { MeasuredSignal } from './measured.js';
 import { plainIntegral } from './plainIntegral.js';
 import type { Target } from './signalTargets.js';
-import { linesOfFit } from './tailsOf.js';
+import { sticksOf } from './tailsOf.js';
 
 /**
  * Measures a signal that declares no lines (`m`) by a plain integral over its range, less the lines of other signals there.
@@ -17,7 +17,7 @@ export function measureRange(spectrum: Spectrum, target: Target, regions: readon
   const [low, high] = signal.rangePpm ?? [signal.shiftPpm - signal.withinPpm, signal.shiftPpm + signal.withinPpm];
   const { area: whole, u: noiseU, count } = plainIntegral(spectrum, low, high);
   const inside = regions
-    .flatMap(({ fit }) => linesOfFit(fit))
+    .flatMap(({ fit }) => sticksOf(fit))
     .filter((line) => line.shiftHz >= low * spectrum.observeMhz && line.shiftHz <= high * spectrum.observeMhz);
   const others = inside.reduce((sum, line) => sum + line.area, 0);
   const area = whole - others;

@@ -7,19 +7,22 @@ import { drawStrip } from './drawStrip.js';
 import { findUnassigned } from './findUnassigned.js';
 import { type FittedRegion, fitRegions } from './fitRegions.js';
 import { flagSignals } from './flagSignals.js';
-import { groupRegions } from './groupRegions.js';
+import { groupRegions, narrowMargin } from './groupRegions.js';
 import { guessWidth } from './guessWidth.js';
 import { learnShape } from './learnShape.js';
 import { locateSignals } from './locateSignals.js';
 import type { MeasuredSignal, Measurement } from './measured.js';
 import { measureRange } from './measureRange.js';
 import { measureSolvents } from './measureSolvents.js';
+import { misfitOf } from './misfitOf.js';
 import { signalTargets, type Target } from './signalTargets.js';
-import { misfitOf } from './verdictOf.js';
 import { whiteningFilter } from './whiteningFilter.js';
 
 /** A line found beside a pattern must hold this share of the region's area: below, it may be the line shape's own fault. */
 const leftOverShareMin = 0.006;
+
+/** Relative misfit of the line shape from which far tails are left out. */
+const narrowMisfit = 0.01;
 
 /**
  * The table of contents of measuring: locate each declared pattern, learn the line shape, fit region by region, look at what
@@ -39,15 +42,19 @@ export function measureSignals(spectrum: Spectrum, method: Method): Measurement 
   const regions = groupRegions(spectrum, targets, located, widthOf);
 
   const shape = learnShape(spectrum, regions, located, guessHz, whitening);
-  const fitted = fitRegions(spectrum, regions, located, shape, whitening);
-  const explained = fitted.map((region) => addExtraLines(region, leftOverShareMin));
+  const narrowed = shape.misfit > narrowMisfit ? groupRegions(spectrum, targets, located, widthOf, narrowMargin) : regions;
+  const fitted = fitRegions(spectrum, narrowed, located, shape, whitening);
+  const explained = fitted.map((region) => addExtraLines(region, Math.max(leftOverShareMin, 2 * shape.misfit)));
 
   const byKey = new Map<string, MeasuredSignal>();
   const seenSpecies = speciesSeen(explained);
   explained.forEach((extra, home) => {
     for (const target of extra.region.targets) {
       const strip = drawStrip(spectrum, extra, target);
-      const described = describeSignal({ spectrum, whitening, plain: fitted, extra: explained, home, seenSpecies }, target);
+      const described = describeSignal(
+        { spectrum, whitening, misfit: shape.misfit, plain: fitted, extra: explained, home, seenSpecies },
+        target,
+      );
       byKey.set(target.key, { ...described, ...(strip ? { strip } : {}) });
     }
   });

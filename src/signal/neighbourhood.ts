@@ -4,7 +4,7 @@ import type { FittedRegion } from './fitRegions.js';
 import type { Parameter, RegionFit } from './regionModel.js';
 import { regionWindow } from './regionWindow.js';
 import type { Target } from './signalTargets.js';
-import { linesOfFit, tailsOf } from './tailsOf.js';
+import { sticksOf, tailsOf } from './tailsOf.js';
 import type { Whitening } from './whiteningFilter.js';
 
 /** Wider than any coupling between protons: the lines of one multiplet follow each other within this. */
@@ -33,10 +33,13 @@ export function neighbourhood(
   regions: readonly FittedRegion[],
   home: FittedRegion,
   target: Target,
-  whitening: Whitening,
+  { whitening, misfit }: { readonly whitening: Whitening; readonly misfit: number },
 ): Neighbourhood {
-  const own = linesOfFit(home.fit).filter(({ key }) => key === target.key);
-  const widthHz = own[0]!.widthHz;
+  const own = sticksOf(home.fit).filter(({ key }) => key === target.key);
+  // A width that strained to imitate another pattern says nothing: the spectrum's own width is the better guess.
+  const term = home.fit.model.terms.find(({ key }) => key === target.key)!;
+  const usualHz = Math.exp(term.widths.reduce((sum, index) => sum + home.fit.model.parameters[index]!.mean, 0));
+  const widthHz = Math.min(own[0]!.widthHz, usualHz);
   const firstHz = spectrum.firstPpm * spectrum.observeMhz;
   const reach = 2 * couplingReachHz + marginWidths * widthHz;
   const high = Math.max(...own.map(({ shiftHz }) => shiftHz)) + reach;
@@ -44,7 +47,8 @@ export function neighbourhood(
   const from = Math.min(spectrum.real.length - 3, Math.max(0, Math.floor((firstHz - high) / spectrum.stepHz)));
   const to = Math.max(from + 3, Math.min(spectrum.real.length, Math.ceil((firstHz - low) / spectrum.stepHz)));
   const others = regions.map((region) => (region === home ? { fit: withoutTerm(region.fit, target.key) } : region));
-  const window = regionWindow(spectrum, from, to, whitening, tailsOf(spectrum, from, to, others));
+  const outside = tailsOf(spectrum, from, to, others);
+  const window = regionWindow(spectrum, { from, to, whitening, misfit, widthHz, outside });
   const fit = fitRegion(window, modelOf(home.fit, target.key));
   const trace = Float64Array.from(
     window.data,

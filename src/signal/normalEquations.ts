@@ -24,8 +24,9 @@ export function normalEquations(
   const linear = terms + 2;
   const half = Math.max(1, (points - 1) / 2);
   const slopeColumn = Float64Array.from({ length: points }, (_, i) => (half - i) / half);
-  const whiten = (column: Float64Array) => whitenColumn(column, filter, 1 / noise);
-  const basis = [...shapes.map(({ value }) => whiten(value)), filteredOnes(points, filter, 1 / noise), whiten(slopeColumn)];
+  const whiten = (column: Float64Array) => trusted(whitenColumn(column, filter, 1 / noise), window);
+  const ones = trusted(filteredOnes(points, filter, 1 / noise), window);
+  const basis = [...shapes.map(({ value }) => whiten(value)), ones, whiten(slopeColumn)];
   const target = whiten(data);
   const priorWeight = (noise > 0 ? 1 : 0) / Math.max(window.baselineU, 1e-300) ** 2;
 
@@ -102,6 +103,13 @@ export function whitenColumn(column: Float64Array, filter: Float64Array, scale: 
     out[i] = sum * scale;
   }
   return out;
+}
+
+/** Weighs whitened rows in place by how well the model is known there. */
+function trusted(column: Float64Array, { trust, filter }: RegionWindow): Float64Array {
+  if (trust === undefined) return column;
+  for (let i = 0; i < column.length; i += 1) column[i] = column[i]! * trust[i + filter.length - 1]!;
+  return column;
 }
 
 function filteredOnes(points: number, filter: Float64Array, scale: number): Float64Array {

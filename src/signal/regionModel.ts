@@ -1,3 +1,5 @@
+import type { LineComponent } from './lineComponents.js';
+
 /** One line of a term: where it stands from the term's shift, and how it moves when a coupling changes. */
 export interface TermLine {
   /** Hz from the term's shift. */
@@ -5,6 +7,11 @@ export interface TermLine {
   readonly share: number;
   /** d offset / d coupling for each of the term's couplings; empty when the term has none. */
   readonly perCoupling: readonly number[];
+  /** Added to the width of the term, Hz; absent: 0. */
+  readonly extraWidthHz?: number;
+  /** Which component of the shared line shape this is, and its share of the line; absent: the whole line. */
+  readonly component?: number;
+  readonly componentShare?: number;
 }
 
 /** One linear component of a region: a pattern of lines with one area. Numbers are indices into the region's parameters. */
@@ -48,6 +55,8 @@ export interface RegionWindow {
   readonly filteredCorrelation: Float64Array;
   /** Standard uncertainty of the local baseline level, units of the data. */
   readonly baselineU: number;
+  /** shape (to - from) or absent: factor below 1 where the line shape is known less well than the noise. */
+  readonly trust?: Float64Array;
 }
 
 export interface RegionModel {
@@ -55,6 +64,8 @@ export interface RegionModel {
   readonly parameters: readonly Parameter[];
   /** Index of the Lorentz share among the parameters. */
   readonly lorentzShare: number;
+  /** The shape that every line of the region is drawn with. */
+  readonly components: readonly LineComponent[];
 }
 
 /** Result of `fitRegion`. Linear components: one area per term, then baseline level and slope. */

@@ -3,6 +3,7 @@ import { addExtraLines } from './addExtraLines.js';
 import { addLineValue } from './addLineValue.js';
 import { type CandidatePattern, candidatePatterns, lettersOf } from './candidatePatterns.js';
 import { fitRegion } from './fitRegion.js';
+import { withComponents } from './lineComponents.js';
 import type { Neighbourhood } from './neighbourhood.js';
 import type { Peak } from './pickPeaks.js';
 import type { Parameter, RegionFit, RegionModel, Term } from './regionModel.js';
@@ -115,6 +116,6 @@ function withRival({ fit, widthHz }: Neighbourhood, candidate: CandidatePattern)
     parameters.push({ kind: 'coupling', start: 0, mean: 0, sigma: 2, low: -3, high: 3 });
     return parameters.length - 1;
   });
-  const term: Term = { ...old, lines: levels(candidate), couplings };
+  const term: Term = { ...old, lines: withComponents(levels(candidate), model.components), couplings };
   return { ...model, parameters, terms: [term] };
 }

@@ -1,4 +1,5 @@
 import { addTerm, termColumns } from './addTerm.js';
+import { withComponents } from './lineComponents.js';
 import { whitenColumn } from './normalEquations.js';
 import type { RegionFit, RegionWindow } from './regionModel.js';
 
@@ -27,31 +28,35 @@ const stepsPerWidth = 4;
 export function searchLeftOver(
   window: RegionWindow,
   fit: RegionFit,
-  span: { readonly lowHz: number; readonly highHz: number },
+  span: { readonly lowHz: number; readonly highHz: number; readonly isAllowed?: (shiftHz: number) => boolean },
   widthHz: number,
   areaMin = 0,
 ): Candidate | undefined {
-  const { stepHz, firstHz, filter, noise, data } = window;
+  const { stepHz, firstHz, filter, noise, data, trust } = window;
   const order = filter.length - 1;
   const reach = Math.min(Math.ceil((reachWidths * widthHz) / stepHz), data.length);
   const step = Math.max(1, Math.round(widthHz / (stepsPerWidth * stepHz)));
   const template = lineTemplate(window, fit, widthHz, reach, order);
+  const weighed = new Float64Array(template.length);
   let best: Candidate | undefined;
   const firstIndex = Math.max(0, Math.ceil((firstHz - span.highHz) / stepHz));
   const lastIndex = Math.min(data.length - 1, Math.floor((firstHz - span.lowHz) / stepHz));
   for (let centre = firstIndex; centre <= lastIndex; centre += step) {
     // Whitened point j stands for data point j + order.
+    if (span.isAllowed?.(firstHz - centre * stepHz) === false) continue;
     const offset = centre - reach - order;
     const from = Math.max(0, -offset);
     const to = Math.min(template.length, fit.whitened.length - offset);
     let energy = 0;
     let match = 0;
     for (let k = from; k < to; k += 1) {
-      energy += template[k]! * template[k]!;
-      match += template[k]! * fit.whitened[k + offset]!;
+      const value = template[k]! * (trust === undefined ? 1 : trust[k + offset + order]!);
+      energy += value * value;
+      match += value * fit.whitened[k + offset]!;
+      weighed[k] = value;
     }
     if (match <= 0) continue;
-    const left = energy - explained(fit, template, offset, from, to);
+    const left = energy - explained(fit, weighed, offset, from, to);
     if (left < 0.003 * energy) continue;
     const score = match / Math.sqrt(left);
     const area = match / left;
@@ -62,7 +67,8 @@ export function searchLeftOver(
 
 function lineTemplate(window: RegionWindow, fit: RegionFit, widthHz: number, reach: number, order: number): Float64Array {
   const columns = termColumns(2 * reach + 1 + order, 0);
-  const term = { key: '', lines: [{ offsetHz: 0, share: 1, perCoupling: [] }], shift: 0, widths: [], phase: 0, couplings: [] };
+  const lines = withComponents([{ offsetHz: 0, share: 1, perCoupling: [] }], fit.model.components);
+  const term = { key: '', lines, shift: 0, widths: [], phase: 0, couplings: [] };
   const lorentzShare = fit.values[fit.model.lorentzShare]!;
   const state = { shiftHz: 0, widthHz, phase: 0, lorentzShare, isShareFree: false, couplings: [] };
   // The ripple of the cut depends on the exact place and is left out of a template that moves.

@@ -28,6 +28,8 @@ export function tailsOf(
 
 export interface FittedLine extends PlacedLine {
   readonly key: string;
+  readonly component: number;
+  readonly componentShare: number;
 }
 
 /** Every line of a fit, as placed. */
@@ -36,9 +38,17 @@ export function linesOfFit(fit: RegionFit): FittedLine[] {
   return model.terms.flatMap((term, t) => {
     const widthHz = Math.exp(term.widths.reduce((sum, index) => sum + values[index]!, 0));
     const shared = { key: term.key, widthHz, phase: values[term.phase]!, lorentzShare: values[model.lorentzShare]! };
-    return term.lines.map(({ offsetHz, share, perCoupling }) => {
+    return term.lines.map(({ offsetHz, share, perCoupling, extraWidthHz = 0, component = 0, componentShare = 1 }) => {
       const moved = perCoupling.reduce((sum, m, k) => sum + m * values[term.couplings[k]!]!, 0);
-      return { ...shared, shiftHz: values[term.shift]! + offsetHz + moved, area: areas[t]! * share };
+      const shiftHz = values[term.shift]! + offsetHz + moved;
+      return { ...shared, shiftHz, area: areas[t]! * share, widthHz: widthHz + extraWidthHz, component, componentShare };
     });
   });
+}
+
+/** The lines of a fit as a chemist counts them: each once, whatever components draw it. */
+export function sticksOf(fit: RegionFit): FittedLine[] {
+  return linesOfFit(fit)
+    .filter(({ component }) => component === 0)
+    .map((line) => ({ ...line, area: line.area / line.componentShare }));
 }

@@ -3,11 +3,12 @@ import type { Spectrum } from '../spectrum/spectrum.js';
 import { extraPrefix } from './addExtraLines.js';
 import type { FittedRegion } from './fitRegions.js';
 import type { MeasuredSignal, Verdict } from './measured.js';
+import { misfitOf } from './misfitOf.js';
 import type { Neighbourhood } from './neighbourhood.js';
 import { patternWords } from './patternWords.js';
 import type { Rival } from './rivalPattern.js';
 import type { Target } from './signalTargets.js';
-import { linesOfFit } from './tailsOf.js';
+import { sticksOf } from './tailsOf.js';
 
 type Judged = Pick<MeasuredSignal, 'verdict' | 'words'> &
   Partial<Pick<MeasuredSignal, 'found' | 'leftOver' | 'other' | 'neighboursImplied' | 'couplingsHz'>>;
@@ -32,7 +33,7 @@ export interface Evidence {
   readonly area: number;
   readonly isPresent: boolean;
   /** The signal by itself with its declared pattern alone, and the best other pattern, when there was doubt. */
-  readonly near?: Neighbourhood;
+  readonly near?: Neighbourhood & { readonly strangeShare: number };
   readonly rival?: Rival;
   /** Whether other signals of the species are there: then this one should be. */
   readonly isExpected: boolean;
@@ -72,7 +73,8 @@ export function verdictOf(spectrum: Spectrum, evidence: Evidence): Judged {
  * shape. Where nothing of the declared pattern is there, whatever else is there differs only if the species is.
  */
 function isProven({ near, target, isPresent, isExpected }: Evidence, rival: Rival): boolean {
-  if (near === undefined || rival.oddsAgainstDeclared < oddsMin || misfitOf(near, target) < detailMisfit) return false;
+  if (near === undefined || rival.oddsAgainstDeclared < oddsMin) return false;
+  if (misfitOf(near, target) < detailMisfit && near.strangeShare < detailMisfit) return false;
   return isPresent ? rival.oddsAgainstExtras > oddsMin : isExpected;
 }
 
@@ -97,7 +99,7 @@ function neighboursOf(pattern: Target['signal']['pattern']): number {
 
 function leftOverOf(spectrum: Spectrum, fitted: FittedRegion, target: Target, area: number): MeasuredSignal['leftOver'] {
   const { fit } = fitted;
-  const lines = linesOfFit(fit);
+  const lines = sticksOf(fit);
   const own = lines.filter((line) => line.key === target.key);
   const reach = 6 * own[0]!.widthHz;
   const high = Math.max(...own.map((line) => line.shiftHz)) + reach;
@@ -119,30 +121,8 @@ function leftOverOf(spectrum: Spectrum, fitted: FittedRegion, target: Target, ar
   return { share: sum / total, u: Math.sqrt(variance) / total, shiftPpm: top.shiftHz / spectrum.observeMhz };
 }
 
-/** rms of the residual beyond noise over rms of the signal, around the signal's lines. */
-export function misfitOf(fitted: Pick<FittedRegion, 'fit' | 'window'>, target: Target): number {
-  const { fit, window } = fitted;
-  const own = linesOfFit(fit).filter((line) => line.key === target.key);
-  let excess = 0;
-  let power = 0;
-  let count = 0;
-  for (const line of own) {
-    const reach = 2 * line.widthHz;
-    const from = Math.max(0, Math.floor((window.firstHz - line.shiftHz - reach) / window.stepHz));
-    const to = Math.min(window.data.length, Math.ceil((window.firstHz - line.shiftHz + reach) / window.stepHz));
-    for (let i = from; i < to; i += 1) {
-      excess += fit.residual[i]! ** 2 - window.noise ** 2;
-      count += 1;
-      power += (fit.fit[i]! - fit.level) ** 2;
-    }
-  }
-  // The sum scatters by sigma^2 sqrt(2 n) by itself.
-  if (excess < 5 * window.noise ** 2 * Math.sqrt(2 * count)) return 0;
-  return power > 0 ? Math.sqrt(Math.max(0, excess) / power) : 0;
-}
-
 function crowdedBy(fitted: FittedRegion, target: Target, area: number): string | undefined {
-  const lines = linesOfFit(fitted.fit);
+  const lines = sticksOf(fitted.fit);
   const own = lines.filter((line) => line.key === target.key && line.area > 0.02 * area);
   const near = lines.find(
     (line) =>
