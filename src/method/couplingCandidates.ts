@@ -1,10 +1,11 @@
+import type { Splitting } from '../pattern/pattern.js';
 import type { MethodSignal, MethodSpecies } from './method.js';
-import { structureHints } from './structureHints.js';
+import { type Hint, structureHints } from './structureHints.js';
 
 /** Two listed couplings are one when they agree this well: papers print 0.1 Hz and rarely agree better than 0.2 Hz. */
 export const sameCouplingHz = 0.3;
-/** A given coupling may lie this far from the listed one, because a quintet lists the mean of its two couplings. */
-const givenCouplingHz = 1;
+/** A known partner's coupling may lie this far from the listed one, because a quintet lists the mean of its two couplings. */
+const meanCouplingHz = 1;
 /** A given coupling smaller than this need not show in the listed pattern. */
 const unresolvedHz = 1.5;
 /** Protons on sp2 and on sp3 carbon lie on either side of it (common practice). */
@@ -47,13 +48,13 @@ export function couplingCandidates(species: MethodSpecies): Candidate[] {
     for (let b = a + 1; b < signals.length; b++) {
       const given = signals[a]!.coupled?.[signals[b]!.id] ?? signals[b]!.coupled?.[signals[a]!.id];
       if (given !== undefined && given !== 0) {
-        const options = optionsOf(signals, a, b, given, true);
+        const options = optionsOf(signals, a, b, { couplingHz: given, withinHz: meanCouplingHz }, true);
         candidates.push({ a, b, couplingHz: given, origin: 'given', options });
       } else if (signals[a]!.coupled === undefined && signals[b]!.coupled === undefined) {
-        const inferred = inferredCoupling(signals, a, b);
-        if (inferred === undefined) continue;
         const said = hint(a, b);
-        if (said === 'neighbours' || (said === 'unknown' && !hasRival(signals, a, b))) candidates.push(inferred);
+        if (said === 'apart' || (said === 'unknown' && hasRival(signals, a, b))) continue;
+        const inferred = inferredCoupling(signals, a, b, said);
+        if (inferred !== undefined) candidates.push(inferred);
       }
     }
   }
@@ -75,23 +76,39 @@ function hasRival(signals: readonly MethodSignal[], a: number, b: number): boole
   );
 }
 
-function inferredCoupling(signals: readonly MethodSignal[], a: number, b: number): Candidate | undefined {
-  const listed = (index: number) => signals[index]!.pattern.splittings.map(({ couplingHz }) => couplingHz);
-  const pairs = listed(a).flatMap((left) => listed(b).map((right) => [left ?? right, right ?? left] as const));
-  const close = pairs.flatMap(([left, right]) =>
-    left !== undefined && right !== undefined && Math.abs(Math.abs(left) - Math.abs(right)) <= sameCouplingHz
-      ? [{ couplingHz: (left + right) / 2, apart: Math.abs(left - right) }]
-      : [],
+/**
+ * The coupling that two listings share. A splitting by exactly the partner's nuclei lists its true size; a quintet or nonet
+ * that sums several partners lists a mean, which may lie further off when the structure says that the two are neighbours.
+ */
+function inferredCoupling(signals: readonly MethodSignal[], a: number, b: number, said: Hint): Candidate | undefined {
+  const isPure = ({ neighbours }: Splitting, nuclei: number) => nuclei % neighbours === 0;
+  const close = signals[a]!.pattern.splittings.flatMap((left) =>
+    signals[b]!.pattern.splittings.flatMap((right) => {
+      const [here, there] = [left.couplingHz ?? right.couplingHz, right.couplingHz ?? left.couplingHz];
+      if (here === undefined || there === undefined) return [];
+      const [pureHere, pureThere] = [isPure(left, signals[b]!.nuclei), isPure(right, signals[a]!.nuclei)];
+      const withinHz = said === 'neighbours' && !(pureHere && pureThere) ? meanCouplingHz : sameCouplingHz;
+      const couplingHz = pureHere === pureThere ? (here + there) / 2 : pureHere ? here : there;
+      return [{ couplingHz, withinHz, apart: Math.abs(Math.abs(here) - Math.abs(there)) }];
+    }),
   );
-  const best = close.sort((x, y) => x.apart - y.apart || x.couplingHz - y.couplingHz)[0];
+  const best = close
+    .filter(({ apart, withinHz }) => apart <= withinHz + 1e-9)
+    .sort((x, y) => x.apart - y.apart || x.couplingHz - y.couplingHz)[0];
   if (best === undefined) return undefined;
-  const options = optionsOf(signals, a, b, best.couplingHz, false);
+  const options = optionsOf(signals, a, b, best, false);
   return options.length > 0 ? { a, b, couplingHz: best.couplingHz, origin: 'inferred', options } : undefined;
 }
 
-function optionsOf(signals: readonly MethodSignal[], a: number, b: number, couplingHz: number, isGiven: boolean): Option[] {
-  const left = places(signals[a]!, couplingHz, isGiven);
-  const right = places(signals[b]!, couplingHz, isGiven);
+/** A coupling, and how far from it a listed one may lie. */
+interface Sought {
+  readonly couplingHz: number;
+  readonly withinHz: number;
+}
+
+function optionsOf(signals: readonly MethodSignal[], a: number, b: number, sought: Sought, isGiven: boolean): Option[] {
+  const left = places(signals[a]!, sought, isGiven);
+  const right = places(signals[b]!, sought, isGiven);
   const nucleiA = signals[a]!.nuclei;
   const nucleiB = signals[b]!.nuclei;
   const options: Option[] = [];
@@ -113,17 +130,20 @@ function optionsOf(signals: readonly MethodSignal[], a: number, b: number, coupl
   return options;
 }
 
-function places(signal: MethodSignal, couplingHz: number, isGiven: boolean): { splitting: number; capacity: number }[] {
+function places(
+  signal: MethodSignal,
+  { couplingHz, withinHz }: Sought,
+  isGiven: boolean,
+): { splitting: number; capacity: number }[] {
   const unlisted = { splitting: -1, capacity: Number.POSITIVE_INFINITY };
   if (signal.pattern.isMultiplet) return isGiven ? [unlisted] : [];
-  const within = isGiven ? givenCouplingHz : sameCouplingHz;
   const listed = signal.pattern.splittings
     .map((splitting, index) => ({
       splitting: index,
       capacity: splitting.neighbours,
       apart: Math.abs(Math.abs(splitting.couplingHz ?? couplingHz) - Math.abs(couplingHz)),
     }))
-    .filter(({ apart }) => apart <= within + 1e-9)
+    .filter(({ apart }) => apart <= withinHz + 1e-9)
     .sort((x, y) => x.apart - y.apart);
   return listed.length === 0 && isGiven && Math.abs(couplingHz) < unresolvedHz ? [unlisted] : listed;
 }

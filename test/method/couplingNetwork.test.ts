@@ -66,7 +66,7 @@ describe('couplingNetwork infers partners from the listed couplings', () => {
 
   it('reads a listed phenyl group as two sets that share the para proton', () => {
     const entries = { o: '8.05 (d, J = 7.7 Hz, 2H)', m: '7.44 (t, J = 7.6 Hz, 2H)', p: '7.55 (t, J = 7.5 Hz, 1H)' };
-    expect(summary(entries)).toEqual({ ...none, couplings: ['o-m 7.65 x2', 'm-p 7.55'] });
+    expect(summary(entries)).toEqual({ ...none, couplings: ['o-m 7.65 x2', 'm-p 7.5'] });
   });
 
   it('reads a symmetric ketone as two sets', () => {
@@ -114,6 +114,12 @@ describe('couplingNetwork infers partners from the listed couplings', () => {
     const found = summary(entries, 'CCOC(=O)CC').couplings;
     expect(found).toContain('OCH2-CH3 7.1');
     expect(found).toContain('COCH2-other 7.1');
+  });
+
+  it('lets a listed nonet be the mean of its couplings when the structure names the partners', () => {
+    const entries = { ArCH2: '2.44 (d, J = 7.1 Hz, 2H)', CH: '1.84 (non, J = 6.7 Hz, 1H)', CH3: '0.89 (d, J = 6.6 Hz, 6H)' };
+    expect(summary(entries).couplings).toEqual(['CH-CH3 6.6']);
+    expect(summary(entries, 'CC(C)Cc1ccccc1')).toEqual({ ...none, couplings: ['ArCH2-CH 7.1', 'CH-CH3 6.6'] });
   });
 
   it('does not pair triplets that the structure places apart', () => {
