@@ -18,16 +18,20 @@ const hiddenWidths = 0.7;
 /** Within this of another line a faulty line shape may ask for a line that is not there. */
 const nearWidths = 3;
 const explainedMin = 0.7;
+/** Least share of the region's area, and in units of the relative misfit far from and near to other lines. */
+const shareLeast = 0.006;
+const farMisfits = 2;
+const nearMisfits = 10;
 
 /**
  * Adds lines where a fitted region leaves something over, one at a time and each refitted with all the rest, until nothing more
  * stands out.
  *
- * @param shareMin share of the region's area below which a line is a fault of the line shape, not a finding
+ * @param misfit relative misfit of the line shape: lines that small beside others are faults of the shape, not findings
  * @returns the region with its final fit; terms of extra lines have keys that begin with `extraPrefix`
  * @source  forward selection by score test; see `searchLeftOver`
  */
-export function addExtraLines(fitted: FittedRegion, shareMin: number): FittedRegion {
+export function addExtraLines(fitted: FittedRegion, misfit: number): FittedRegion {
   let { fit } = fitted;
   for (let extra = 0; extra < extrasMax; extra += 1) {
     const lines = sticksOf(fit);
@@ -36,7 +40,7 @@ export function addExtraLines(fitted: FittedRegion, shareMin: number): FittedReg
     const highHz = Math.max(...lines.map((line) => line.shiftHz)) + aroundWidths * widthHz;
     const lowHz = Math.min(...lines.map((line) => line.shiftHz)) - aroundWidths * widthHz;
     const total = fit.areas.reduce((sum, area) => sum + Math.max(0, area), 0);
-    const areaMin = shareMin * total;
+    const areaMin = Math.max(shareLeast, farMisfits * misfit) * total;
     const forbidden = lines.filter(({ key }) => isSingle(fit.model, key)).map(({ shiftHz }) => shiftHz);
     const isAllowed = (shiftHz: number) => forbidden.every((place) => Math.abs(place - shiftHz) >= hiddenWidths * widthHz);
     const candidate = searchLeftOver(fitted.window, fit, { lowHz, highHz, isAllowed }, widthHz, areaMin);
@@ -47,7 +51,8 @@ export function addExtraLines(fitted: FittedRegion, shareMin: number): FittedReg
     const u = Math.sqrt(next.covariance[index * next.size + index]!);
     if (!(area > 3 * u && area > areaMin) || fit.cost - next.cost < scoreMin ** 2 - 4) break;
     const place = next.values[next.model.terms[index]!.shift]!;
-    if (lines.some(({ shiftHz }) => Math.abs(shiftHz - place) < nearWidths * widthHz) && !explainsMost(fit, next)) break;
+    const isNear = lines.some(({ shiftHz }) => Math.abs(shiftHz - place) < nearWidths * widthHz);
+    if (isNear && (area < nearMisfits * misfit * total || !explainsMost(fit, next))) break;
     fit = next;
   }
   return fit === fitted.fit ? fitted : { ...fitted, fit };

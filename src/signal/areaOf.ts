@@ -40,31 +40,45 @@ export function areaOf({ fit, window }: FittedRegion, t: number): { area: number
 
 /** Points this far from the outermost lines count as the signal's own. */
 const ownWidths = 8;
-/** What the residual adds is known to this share of itself. */
-const correctionU = 0.2;
+/** What the sum differs from the fit by is known to this share of itself. */
+const differenceU = 0.2;
+/** Part of the relative misfit that may go into the area: positive and negative errors of a shape mostly cancel. */
+const shapeShare = 0.3;
 
 /**
- * Adds what the fit leaves over to the area of a signal that stands alone, where that is more than noise: the shape of a real
- * line is never quite the model's, but what stands under a lone signal is its own.
+ * Area of a signal that stands alone where the line shape is not known to the noise: the sum of the data on the flat baseline, with
+ * the model used only for the tails beyond the summed points. What stands under a lone signal is its own, whatever its shape.
  *
- * @param lines of the signal; the residual is summed around them
- * @returns area and u with the correction, or as they came when noise explains the residual
- * @source  plain integration of the residual (derived): u(I) = sigma dx sqrt(N), and a fifth of the correction
+ * @param lines     of the signal; data are summed around them
+ * @param baselineU standard uncertainty of the spectrum's baseline level, units of the data
+ * @param misfit    relative misfit of the line shape
+ * @returns area and u; the fitted area where noise matters more than the shape
+ * @source  plain integration (shared formulas, section 3), Lorentzian tails (section 4)
  */
-export function withResidual(
+export function summedArea(
   { fit, window }: FittedRegion,
   measured: { readonly area: number; readonly u: number },
   lines: readonly { readonly shiftHz: number; readonly widthHz: number }[],
+  { baselineU, misfit }: { readonly baselineU: number; readonly misfit: number },
 ): { area: number; u: number } {
+  const { stepHz, firstHz, data, noise } = window;
   const reach = ownWidths * lines[0]!.widthHz;
   const high = Math.max(...lines.map(({ shiftHz }) => shiftHz)) + reach;
   const low = Math.min(...lines.map(({ shiftHz }) => shiftHz)) - reach;
-  const from = Math.max(0, Math.ceil((window.firstHz - high) / window.stepHz));
-  const to = Math.min(window.data.length, Math.floor((window.firstHz - low) / window.stepHz) + 1);
+  const from = Math.max(0, Math.ceil((firstHz - high) / stepHz));
+  const to = Math.min(data.length, Math.floor((firstHz - low) / stepHz) + 1);
   let sum = 0;
-  for (let i = from; i < to; i += 1) sum += fit.residual[i]!;
-  const correction = sum * window.stepHz;
-  const noiseU = window.noise * window.stepHz * Math.sqrt(Math.max(1, to - from));
-  if (Math.abs(correction) < 5 * noiseU) return { area: measured.area, u: measured.u };
-  return { area: measured.area + correction, u: Math.hypot(measured.u, noiseU, correctionU * correction) };
+  let model = 0;
+  const middle = (data.length - 1) / 2;
+  for (let i = from; i < to; i += 1) {
+    sum += data[i]!;
+    model += fit.fit[i]! - fit.level - fit.slopePerHz * (middle - i) * stepHz;
+  }
+  if (!(model > 0)) return { area: measured.area, u: measured.u };
+  const area = (measured.area * sum) / model;
+  const noiseU = noise * stepHz * Math.sqrt(to - from);
+  const difference = area - measured.area;
+  const shapeU = shapeShare * misfit * area;
+  if (noiseU > misfit * area) return { area: measured.area, u: Math.hypot(measured.u, shapeU) };
+  return { area, u: Math.hypot(noiseU, baselineU * (to - from) * stepHz, differenceU * difference, shapeU) };
 }

@@ -1,5 +1,5 @@
 import type { Spectrum } from '../spectrum/spectrum.js';
-import { areaOf, withResidual } from './areaOf.js';
+import { areaOf, summedArea } from './areaOf.js';
 import type { FittedRegion } from './fitRegions.js';
 import type { MeasuredSignal } from './measured.js';
 import { misfitOf } from './misfitOf.js';
@@ -56,7 +56,10 @@ export function describeSignal(context: SignalContext, target: Target): Measured
   // Where another pattern stands, its area is what is there; the declared one only covers a part of it.
   const other = judged.verdict === 'differs' ? doubt.rival : undefined;
   const isAlone = extra.region.targets.length === 1;
-  const declared = isAlone && isPresent && fit.areas.length === 1 ? withResidual(extra, { area, u }, lines) : { area, u };
+  const declared =
+    context.misfit > 0 && isAlone && isPresent && fit.areas.length === 1
+      ? summedArea(extra, { area, u }, lines, { baselineU: spectrum.baselineU, misfit: context.misfit })
+      : { area, u };
   const measured = other && judged.found === other.pattern ? areaOf({ ...doubt.near!, fit: other.fit }, 0) : declared;
   const widest = lines[0]!.widthHz;
   const high = (Math.max(...lines.map((line) => line.shiftHz)) + 12 * widest) / observeMhz;

@@ -18,9 +18,6 @@ import { misfitOf } from './misfitOf.js';
 import { signalTargets, type Target } from './signalTargets.js';
 import { whiteningFilter } from './whiteningFilter.js';
 
-/** A line found beside a pattern must hold this share of the region's area: below, it may be the line shape's own fault. */
-const leftOverShareMin = 0.006;
-
 /** Relative misfit of the line shape from which far tails are left out. */
 const narrowMisfit = 0.01;
 
@@ -44,7 +41,7 @@ export function measureSignals(spectrum: Spectrum, method: Method): Measurement 
   const shape = learnShape(spectrum, regions, located, guessHz, whitening);
   const narrowed = shape.misfit > narrowMisfit ? groupRegions(spectrum, targets, located, widthOf, narrowMargin) : regions;
   const fitted = fitRegions(spectrum, narrowed, located, shape, whitening);
-  const explained = fitted.map((region) => addExtraLines(region, Math.max(leftOverShareMin, 2 * shape.misfit)));
+  const explained = fitted.map((region) => addExtraLines(region, shape.misfit));
 
   const byKey = new Map<string, MeasuredSignal>();
   const seenSpecies = speciesSeen(explained);

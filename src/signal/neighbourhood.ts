@@ -15,6 +15,8 @@ const marginWidths = 12;
 export interface Neighbourhood extends FittedRegion {
   readonly target: Target;
   readonly widthHz: number;
+  /** Relative misfit of the shared line shape. */
+  readonly misfit: number;
   /** shape (points): data less every other declared signal, less the baseline of the fit. */
   readonly trace: Float64Array;
 }
@@ -54,7 +56,7 @@ export function neighbourhood(
     window.data,
     (value, i) => value - fit.level - fit.slopePerHz * slopeHz(window.data.length, i, window.stepHz),
   );
-  return { region: { targets: [target], from, to }, window, fit, target, widthHz, trace };
+  return { region: { targets: [target], from, to }, window, fit, target, widthHz, misfit, trace };
 }
 
 function slopeHz(points: number, index: number, stepHz: number): number {

@@ -29,6 +29,7 @@ export function regionWindow(
 ): RegionWindow {
   const data = spectrum.real.slice(from, to);
   if (outside !== undefined) for (let i = 0; i < data.length; i += 1) data[i] = data[i]! - outside[i]!;
+  const tallest = misfit > 0 ? data.reduce((most, value) => Math.max(most, value), 0) : 0;
   return {
     from,
     to,
@@ -40,7 +41,8 @@ export function regionWindow(
     filter: whitening.filter,
     filteredCorrelation: whitening.remaining,
     ...(misfit > 0 ? { trust: trustOf(data, spectrum.noise, misfit, widthHz / spectrum.stepHz) } : {}),
-    baselineU: Math.max(spectrum.baselineU, 0.01 * spectrum.noise, Number.MIN_VALUE),
+    // Beside a tall line the baseline is no better known than the line's own tails.
+    baselineU: Math.max(Math.hypot(spectrum.baselineU, 0.5 * misfit * tallest), 0.01 * spectrum.noise, Number.MIN_VALUE),
   };
 }
 

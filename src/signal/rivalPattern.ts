@@ -54,7 +54,7 @@ export function rivalPattern(near: Neighbourhood, peaks: readonly Peak[]): Rival
     if (fit.areas[0]! > 0 && (best === undefined || bic < best.bic)) best = { candidate, fit, bic };
   }
   if (best === undefined) return undefined;
-  const extra = addExtraLines(near, 0.006).fit;
+  const extra = addExtraLines(near, near.misfit).fit;
   const scale = Math.max(1, Math.min(best.fit.chiSquare, extra.chiSquare) / near.window.data.length);
   const rival = best.fit;
   const odds = (other: RegionFit) => Math.min(oddsMax, Math.exp((criterion(other, scale) - criterion(rival, scale)) / 2));
