@@ -25,7 +25,15 @@ export function chooseReference(
   const wanted = method.reference.signal;
   const named = expectations.find(({ name, kind }) => (wanted === 'solvent' ? kind === 'solvent' : name === wanted));
   const target = named && method.reference.shiftPpm !== undefined ? { ...named, shiftPpm: method.reference.shiftPpm } : named;
-  const first = target ? pinReference(real, axis, noise, target, wanted === 'HDO' || (wanted === 'solvent' && method.solvent === 'D2O') ? waterWithinPpm : withinPpm) : undefined;
+  const first = target
+    ? pinReference(
+        real,
+        axis,
+        noise,
+        target,
+        wanted === 'HDO' || (wanted === 'solvent' && method.solvent === 'D2O') ? waterWithinPpm : withinPpm,
+      )
+    : undefined;
   if (first) return { pinned: first, flags: first.isSplit ? [splitFlag(wanted)] : [] };
   for (const next of ranked(expectations, wanted)) {
     const pinned = pinReference(real, axis, noise, next, withinPpm);

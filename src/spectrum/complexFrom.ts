@@ -6,7 +6,7 @@ import { findOnset } from './findOnset.js';
 import { hilbertPartner } from './hilbertPartner.js';
 import { noiseCorrelationOf } from './noiseCorrelationOf.js';
 import type { StepRecord } from './spectrum.js';
-import { transformFid } from './transformFid.js';
+import { buildsUp, transformFid } from './transformFid.js';
 
 /** A complex spectrum before phasing, with what is known of how it came about. */
 export interface Raw {
@@ -45,7 +45,8 @@ function fromFid(acquisition: Acquisition, processing: Processing, givenOnset: n
   const lineBroadeningHz =
     processing.lineBroadeningHz === 'matched' ? Math.min(5, matchedShare / acquisitionS) : processing.lineBroadeningHz;
   const { zeroFilling } = processing;
-  const whole = transformFid(real, imag, dwellS, { onsetPoints, lineBroadeningHz, zeroFilling });
+  const keepsEarly = buildsUp(real, imag, onsetPoints);
+  const whole = transformFid(real, imag, dwellS, { onsetPoints, lineBroadeningHz, zeroFilling, keepsEarly });
   const isReal = acquisition.imag === undefined;
   const spectrum = isReal ? upperHalf(whole) : whole;
   const points = powerOfTwoFrom(Math.max(real.length, kept * zeroFilling));
@@ -56,7 +57,7 @@ function fromFid(acquisition: Acquisition, processing: Processing, givenOnset: n
     acquisitionS,
     isReal: false,
     steps: [
-      { step: 'onset', parameters: { onset_points: onsetPoints, given: givenOnset !== undefined } },
+      { step: 'onset', parameters: { whole_points: onsetPoints, build_up_kept: keepsEarly, given: givenOnset !== undefined } },
       { step: 'window', parameters: { shape: 'exponential', line_broadening_hz: lineBroadeningHz } },
       { step: 'transform', parameters: { points_in: kept, points_out: points, step_hz: spectrum.stepHz, one_channel: isReal } },
     ],

@@ -115,7 +115,7 @@ function solveHermitian(upper: readonly Float64Array[], right: Float64Array): Fl
     const full = new Float64Array(2 * size + 2);
     for (let b = 0; b < size; b += 1) {
       const source = b >= a ? line : upper[b]!;
-      const place = b >= a ? b : a;
+      const place = Math.max(a, b);
       full[2 * b] = source[2 * place]!;
       full[2 * b + 1] = (b >= a ? 1 : -1) * source[2 * place + 1]!;
     }

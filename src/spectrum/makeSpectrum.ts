@@ -9,7 +9,7 @@ import { findPeaks } from './findPeaks.js';
 import { flattenBaseline } from './flattenBaseline.js';
 import { measuredNoiseCorrelation } from './noiseCorrelationOf.js';
 import { phaseSpectrum } from './phaseSpectrum.js';
-import { type AxisPlace, placeAxis } from './placeAxis.js';
+import { type AxisHintPlace, type AxisPlace, placeAxis } from './placeAxis.js';
 import { qualityFlags } from './qualityFlags.js';
 import type { Spectrum, StepRecord } from './spectrum.js';
 
@@ -79,7 +79,7 @@ export function makeSpectrum(acquisition: Acquisition, method: Method): Result<S
     },
     quality: {
       phaseDeg: phased.phaseDeg,
-      ...(raw.onsetPoints !== undefined ? { onsetPoints: raw.onsetPoints } : {}),
+      ...(raw.onsetPoints !== undefined ? { onsetPoints: raw.onsetPoints - phased.phaseDeg[1] / 360 } : {}),
       ...(pinned ? { referenceWidthHz: pinned.widthHz } : {}),
     },
     steps,
@@ -109,14 +109,15 @@ function requireFit(acquisition: Acquisition, method: Method): Problem | undefin
   return undefined;
 }
 
-function hintOf(acquisition: Acquisition, method: Method): { centrePpm: number; isRising: boolean } | undefined {
+/** A header is believed within 13 ppm; what the site states for its own files, within 0.3. */
+function hintOf(acquisition: Acquisition, method: Method): AxisHintPlace | undefined {
   const { axis } = acquisition;
   if (!axis || acquisition.kind === 'fid')
-    return method.input.carrierPpm !== undefined ? { centrePpm: method.input.carrierPpm, isRising: true } : undefined;
+    return method.input.carrierPpm !== undefined ? { centrePpm: method.input.carrierPpm, reachPpm: 0.3 } : undefined;
   // Index n/2 of the spectrum, which runs from low to high frequency.
   const stepPpm = Math.abs(axis.lastPpm - axis.firstPpm) / (acquisition.real.length - 1);
   const lowest = Math.min(axis.firstPpm, axis.lastPpm);
-  return { centrePpm: lowest + (acquisition.real.length / 2) * stepPpm, isRising: true };
+  return { centrePpm: lowest + (acquisition.real.length / 2) * stepPpm, isRising: true, reachPpm: 13 };
 }
 
 function requirePlace(place: AxisPlace): Problem | undefined {

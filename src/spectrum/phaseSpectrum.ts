@@ -8,7 +8,7 @@ import { rotatePhase } from './rotatePhase.js';
 import type { StepRecord } from './spectrum.js';
 
 /** A real spectrum within this of being in phase is left as it came. */
-const inPhaseRad = (4 * Math.PI) / 180;
+const inPhaseRad = (6 * Math.PI) / 180;
 
 export interface Phased {
   readonly spectrum: ComplexSpectrum;

@@ -78,7 +78,12 @@ export function pinReference(
  * The amplitude of the pattern at a place. Every line must be there: a foreign singlet under one line of a quintet is no quintet, so
  * the least line bounds the whole.
  */
-function matchedAt(real: Float64Array, place: number, offsets: readonly { points: number; share: number }[], power: number): number {
+function matchedAt(
+  real: Float64Array,
+  place: number,
+  offsets: readonly { points: number; share: number }[],
+  power: number,
+): number {
   let sum = 0;
   let least = Number.POSITIVE_INFINITY;
   for (const { points, share } of offsets) {

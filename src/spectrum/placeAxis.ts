@@ -12,6 +12,15 @@ export interface AxisPlace {
   readonly runnerUp: number;
 }
 
+/** Where the header or the site says that the centre lies. */
+export interface AxisHintPlace {
+  readonly centrePpm: number;
+  /** Absent: both directions of frequency are tried. */
+  readonly isRising?: boolean;
+  /** How far the truth may lie from it, ppm. */
+  readonly reachPpm: number;
+}
+
 /** Shifts of real samples differ from listed ones by this much, one against the other (common practice). */
 const tolerancePpm = 0.03;
 const peakCountMax = 48;
@@ -35,29 +44,22 @@ export function placeAxis(
   observeMhz: number,
   peaks: readonly Peak[],
   expectations: readonly Expectation[],
-  hint: { readonly centrePpm: number; readonly isRising: boolean } | undefined,
+  hint: AxisHintPlace | undefined,
 ): AxisPlace {
   const n = spectrum.real.length;
   const found = weighPeaks(peaks, n, spectrum.stepHz / observeMhz);
   const sought = expectations.map((expectation) => ({ ...expectation, reachPpm: reachOf(expectation, observeMhz) }));
   const halfWidthPpm = (n * spectrum.stepHz) / observeMhz / 2;
   const places: AxisPlace[] = [];
-  for (const isRising of hint ? [hint.isRising] : [true, false]) {
-    const oriented = found
-      .map(({ offsetPpm, weight }) => ({ offsetPpm: isRising ? offsetPpm : -offsetPpm, weight }))
-      .sort((a, b) => a.offsetPpm - b.offsetPpm);
-    for (const centrePpm of candidates(oriented, sought, hint)) {
+  for (const isRising of hint?.isRising !== undefined ? [hint.isRising] : [true, false]) {
+    const oriented = orient(found, isRising);
+    const stated = hint ? [hint.centrePpm] : [];
+    for (const centrePpm of [...stated, ...candidates(oriented, sought, hint)]) {
       const meeting = meet(oriented, sought, centrePpm, halfWidthPpm);
       const isNear = hint !== undefined && Math.abs(centrePpm - hint.centrePpm) < 0.15;
       places.push({ centrePpm, isRising, score: meeting + (isNear ? hintBonus : 0), runnerUp: 0 });
     }
   }
-  if (hint)
-    places.push({
-      ...hint,
-      score: meet(orient(found, hint.isRising), sought, hint.centrePpm, halfWidthPpm) + hintBonus,
-      runnerUp: 0,
-    });
   const best = places.reduce<AxisPlace | undefined>((top, place) => (!top || place.score > top.score ? place : top), undefined);
   if (!best) return { centrePpm: hint?.centrePpm ?? 0, isRising: hint?.isRising ?? true, score: 0, runnerUp: 0 };
   const centrePpm = best.centrePpm + consensusOffset(orient(found, best.isRising), sought, best.centrePpm);
@@ -91,11 +93,11 @@ function reachOf({ lines }: Expectation, observeMhz: number): number {
   return Math.max(0, ...lines.filter(({ share }) => share > 0.02).map(({ offsetHz }) => Math.abs(offsetHz))) / observeMhz;
 }
 
-function candidates(found: readonly Weighed[], sought: readonly Sought[], hint: { centrePpm: number } | undefined): number[] {
+function candidates(found: readonly Weighed[], sought: readonly Sought[], hint: AxisHintPlace | undefined): number[] {
   const strongest = [...found].sort((a, b) => b.weight - a.weight).slice(0, 24);
   const places: number[] = [];
   for (const peak of strongest) for (const { shiftPpm } of sought) places.push(shiftPpm - peak.offsetPpm);
-  const near = hint ? places.filter((place) => Math.abs(place - hint.centrePpm) < 13) : places;
+  const near = hint ? places.filter((place) => Math.abs(place - hint.centrePpm) < hint.reachPpm) : places;
   near.sort((a, b) => a - b);
   return near.filter((place, index) => index === 0 || place - near[index - 1]! > 0.004);
 }

@@ -16,9 +16,14 @@ export function transformFid(
   real: Float64Array,
   imag: Float64Array,
   dwellS: number,
-  settings: { readonly onsetPoints: number; readonly lineBroadeningHz: number; readonly zeroFilling: number },
+  settings: {
+    readonly onsetPoints: number;
+    readonly lineBroadeningHz: number;
+    readonly zeroFilling: number;
+    readonly keepsEarly: boolean;
+  },
 ): ComplexSpectrum {
-  const { onsetPoints, lineBroadeningHz, zeroFilling } = settings;
+  const { onsetPoints, lineBroadeningHz, zeroFilling, keepsEarly: early } = settings;
   const kept = real.length - onsetPoints;
   const n = powerOfTwoFrom(Math.max(real.length, kept * zeroFilling));
   const data = new Float64Array(2 * n);
@@ -30,7 +35,6 @@ export function transformFid(
     data[2 * k + 1] = half * window * imag[k + onsetPoints]!;
     window *= step;
   }
-  const early = earlySignal(real, imag, onsetPoints);
   if (onsetPoints > 0 && !early) halveFirst(data);
   if (early) {
     for (let k = 0; k < onsetPoints; k += 1) {
@@ -42,8 +46,12 @@ export function transformFid(
   return centred(fastFourier(data), n, 1 / (n * dwellS));
 }
 
-/** Whether the points before the onset hold the build-up of a digital filter, or only noise. */
-function earlySignal(real: Float64Array, imag: Float64Array, onsetPoints: number): boolean {
+/**
+ * Whether the points before the onset hold the build-up of a digital filter, or only noise.
+ *
+ * @param onsetPoints whole points before the onset
+ */
+export function buildsUp(real: Float64Array, imag: Float64Array, onsetPoints: number): boolean {
   if (onsetPoints < 6) return false;
   const energy = (from: number, to: number) => {
     let sum = 0;
