@@ -1,7 +1,7 @@
 import { resolve } from 'node:path';
 import type { ArgumentsCamelCase, CommandModule } from 'yargs';
 import { realContext } from '../record/recordContext.js';
-import { findSite, type FoundSite } from '../watch/findSite.js';
+import { type FoundSite, findSite } from '../watch/findSite.js';
 import { forkShareReader } from '../watch/forkShareReader.js';
 import { makeMeasurePool } from '../watch/measurePool.js';
 import { type OpenWatch, openWatch } from '../watch/openWatch.js';
@@ -44,11 +44,24 @@ export const watchCommand: CommandModule<object, WatchArguments> = {
     yargs
       .positional('share', { describe: 'folder of run folders; only ever read', type: 'string', demandOption: true })
       .option('method', { describe: 'method for runs that name none', type: 'string', requiresArg: true })
-      .option('out', { describe: 'output folder, outside the share; made if missing', type: 'string', demandOption: true, requiresArg: true })
+      .option('out', {
+        describe: 'output folder, outside the share; made if missing',
+        type: 'string',
+        demandOption: true,
+        requiresArg: true,
+      })
       .option('once', { describe: 'make one pass and exit (for cron)', type: 'boolean', default: false })
-      .option('settle', { describe: 'seconds a file must be quiet before it is taken in (default 30, with --once 2)', type: 'number', requiresArg: true })
+      .option('settle', {
+        describe: 'seconds a file must be quiet before it is taken in (default 30, with --once 2)',
+        type: 'number',
+        requiresArg: true,
+      })
       .option('poll', { describe: 'seconds between two looks at the share (default 20)', type: 'number', requiresArg: true })
-      .option('site', { describe: 'site file (default: kinetrail.yaml in, beside or above the share)', type: 'string', requiresArg: true })
+      .option('site', {
+        describe: 'site file (default: kinetrail.yaml in, beside or above the share)',
+        type: 'string',
+        requiresArg: true,
+      })
       .option('workers', { describe: 'processes that measure at once', type: 'number', requiresArg: true })
       .option('json', { describe: 'with --once: print one JSON object', type: 'boolean', default: false })
       .example('kinetrail watch /share --method method.yaml --out /out', 'follow a share through the night')
@@ -142,6 +155,7 @@ function workersOf(args: WatchArguments, site: FoundSite | undefined): number {
 function wrongNumber({ settle, poll, workers }: WatchArguments): string | undefined {
   if (settle !== undefined && !(settle >= 0 && settle <= 86_400)) return '--settle must be a number of seconds, 0 to 86400';
   if (poll !== undefined && !(poll > 0 && poll <= 86_400)) return '--poll must be a number of seconds, above 0, up to 86400';
-  if (workers !== undefined && !(Number.isInteger(workers) && workers >= 1 && workers <= 64)) return '--workers must be a whole number, 1 to 64';
+  if (workers !== undefined && !(Number.isInteger(workers) && workers >= 1 && workers <= 64))
+    return '--workers must be a whole number, 1 to 64';
   return undefined;
 }

@@ -1,6 +1,6 @@
 import { pathText } from '../record/bytePath.js';
-import { runFolderOf, type PassOutcome } from '../watch/watchPass.js';
 import { runNameOf } from '../watch/takeInRun.js';
+import { type PassOutcome, runFolderOf } from '../watch/watchPass.js';
 import type { WatchEvent, WatchSession } from '../watch/watchTypes.js';
 import { problemText } from './printProblem.js';
 import { escapeForTerminal } from './terminalText.js';
@@ -35,7 +35,9 @@ export function makeWatchPrinter({ isOnce }: { isOnce: boolean }, stream: NodeJS
     afterPass: (session, pass) => {
       if (!isLiving) return;
       clear();
-      const lines = pass.listing.runs.map((listing) => blockLine(session, pass, runNameOf(session, listing), pathText(runFolderOf(session, listing))));
+      const lines = pass.listing.runs.map((listing) =>
+        blockLine(session, pass, runNameOf(session, listing), pathText(runFolderOf(session, listing))),
+      );
       stream.write(lines.map((line) => `${line}\n`).join(''));
       blockLines = lines.length;
     },

@@ -38,6 +38,8 @@ export function onceJson(session: WatchSession, { runs, problems }: OnceSummary)
 /** One line for each file that could not be used. */
 export function unreadLines({ runs }: OnceSummary): string[] {
   return runs.flatMap(({ run, unread }) =>
-    unread.map(({ file, status, message, code }) => escapeForTerminal(`error: ${run}/${file}: ${status}: ${message}   (code: ${code})`)),
+    unread.map(({ file, status, message, code }) =>
+      escapeForTerminal(`error: ${run}/${file}: ${status}: ${message}   (code: ${code})`),
+    ),
   );
 }

@@ -51,19 +51,43 @@ function ofFiles(state: RunState): ExceptionFact[] {
     if (fact.state === 'duplicate') return [{ kind: 'duplicate', message: `same bytes as ${fact.duplicateOf}`, file, seq, at }];
     if (fact.state === 'vanished') return [{ kind: 'vanished', message: fact.reason ?? '', file, seq, at }];
     if (fact.state !== 'replaced') return [];
-    return [{ kind: 'replaced', message: `another content was seen under this name (${hash}); it is captured and does not count`, file, seq, at }];
+    return [
+      {
+        kind: 'replaced',
+        message: `another content was seen under this name (${hash}); it is captured and does not count`,
+        file,
+        seq,
+        at,
+      },
+    ];
   });
 }
 
 function ofMethods(state: RunState): ExceptionFact[] {
-  const engines = [...new Set([...state.files.values()].map(({ kept }) => kept.engine).filter((engine) => engine !== undefined))].sort();
-  const last = [...state.files.values()].reduce((most, { kept }) => (most === undefined || kept.seq > most.seq ? kept : most), undefined as { seq: number; at: string } | undefined);
+  const engines = [
+    ...new Set([...state.files.values()].map(({ kept }) => kept.engine).filter((engine) => engine !== undefined)),
+  ].sort();
+  const last = [...state.files.values()].reduce(
+    (most, { kept }) => (most === undefined || kept.seq > most.seq ? kept : most),
+    undefined as { seq: number; at: string } | undefined,
+  );
   const several: ExceptionFact[] =
     engines.length > 1 && last !== undefined
-      ? [{ kind: 'several-programs', message: `points were measured by program versions ${engines.join(', ')}`, seq: last.seq, at: last.at }]
+      ? [
+          {
+            kind: 'several-programs',
+            message: `points were measured by program versions ${engines.join(', ')}`,
+            seq: last.seq,
+            at: last.at,
+          },
+        ]
       : [];
   const edited = state.revisions
-    .filter((revision) => revision.state === 'noticed' && !state.revisions.some(({ state: use, sha256 }) => use === 'used' && sha256 === revision.sha256))
+    .filter(
+      (revision) =>
+        revision.state === 'noticed' &&
+        !state.revisions.some(({ state: use, sha256 }) => use === 'used' && sha256 === revision.sha256),
+    )
     .map(({ seq, at, revision, sha256, file }): ExceptionFact => {
       const message = `the method file was edited (revision ${revision}, ${sha256.slice(0, 12)}); the run goes on with the captured one`;
       return { kind: 'method-edited', message, file, seq, at };
@@ -84,17 +108,23 @@ function late(state: RunState, acquired: AcquiredBySha256): ExceptionFact[] {
   for (const [sha256, { seq, at, file }] of firstSeq) {
     const time = acquired.get(sha256);
     if (time === undefined) continue;
-    if (time < latest) facts.push({ kind: 'late', message: `it came after ${latestFile}, which was acquired later`, file, seq, at });
+    if (time < latest)
+      facts.push({ kind: 'late', message: `it came after ${latestFile}, which was acquired later`, file, seq, at });
     else [latest, latestFile] = [time, file];
   }
   return facts;
 }
 
 /** Acquisition times out of the point records of each file. */
-export function acquiredTimes(files: readonly { readonly sha256: string; readonly records: readonly PointRecord[] }[]): AcquiredBySha256 {
+export function acquiredTimes(
+  files: readonly { readonly sha256: string; readonly records: readonly PointRecord[] }[],
+): AcquiredBySha256 {
   const times = new Map<string, string>();
   for (const { sha256, records } of files) {
-    const first = records.map(({ acquired }) => acquired).filter((time) => time !== undefined).sort()[0];
+    const first = records
+      .map(({ acquired }) => acquired)
+      .filter((time) => time !== undefined)
+      .sort()[0];
     if (first !== undefined) times.set(sha256, first);
   }
   return times;

@@ -16,7 +16,8 @@ import { loadContents, type RunContents } from './runContents.js';
 import { readLedgerBytes } from './runRecord.js';
 import { foldLedger, type RunState } from './runState.js';
 
-export interface RevisionFact extends Pick<MethodEntry, 'revision' | 'sha256' | 'title' | 'version' | 'state' | 'by' | 'because'> {
+export interface RevisionFact
+  extends Pick<MethodEntry, 'revision' | 'sha256' | 'title' | 'version' | 'state' | 'by' | 'because'> {
   readonly at: string;
   readonly seq: number;
 }
@@ -113,7 +114,10 @@ export async function factsOf(
     createdUtc: headEntry.at,
     program: headEntry.program,
     engines: enginesOf(state),
-    ledgerText: lines.slice(0, head.seq).map(({ entry }) => encodeLine(entry).bytes.toString('utf8')).join(''),
+    ledgerText: lines
+      .slice(0, head.seq)
+      .map(({ entry }) => encodeLine(entry).bytes.toString('utf8'))
+      .join(''),
   });
 }
 

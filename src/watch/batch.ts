@@ -5,7 +5,7 @@ import { foldLedger, resultKey } from '../record/runState.js';
 import type { MethodSource } from './chooseMethod.js';
 import type { EntryBase } from './examineFile.js';
 import { adopt, appendInput, capture, commit, type Underway } from './takeInFiles.js';
-import type { WatchSession } from './watchTypes.js';
+import type { MeasureDeps } from './watchTypes.js';
 
 /** Takes complete files through capture, measuring and commit; a few are under way at once, commits keep the order given. */
 export interface Batch {
@@ -14,7 +14,7 @@ export interface Batch {
 }
 
 export interface BatchOptions {
-  readonly session: WatchSession;
+  readonly session: MeasureDeps;
   readonly held: HeldRecord;
   readonly method: MethodSource;
   readonly onCommitted: (entry: InputEntry) => void;

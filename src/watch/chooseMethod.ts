@@ -32,7 +32,8 @@ export async function chooseMethod(
   }
   const read = await session.reader.readPath(path);
   if (!read.ok) {
-    const message = `the method of run ${run}: ${read.problem.message}`;
+    const why = read.problem.code === 'file-vanished' ? 'there is no such file' : read.problem.message;
+    const message = `the method of run ${run}: ${why}`;
     return fail([{ ...read.problem, code: 'method-unreadable', message, where: { file: path } }]);
   }
   const text = Buffer.from(read.value.bytes).toString('utf8');

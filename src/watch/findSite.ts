@@ -1,6 +1,6 @@
 import { dirname, join } from 'node:path';
-import { fail, ok, type Problem, type Result } from '../base/result.js';
 import { limits } from '../base/limits.js';
+import { fail, ok, type Problem, type Result } from '../base/result.js';
 import { readSiteFile } from '../method/readSiteFile.js';
 import type { SiteFile } from '../method/site.js';
 import { readWhole } from '../record/durable.js';

@@ -1,9 +1,11 @@
 import { ok, type Result } from '../base/result.js';
 import { getRaw } from '../record/objectStore.js';
+import type { HeldRecord } from '../record/runRecord.js';
 import { foldLedger, type RunState, type StampedInput } from '../record/runState.js';
 import { makeBatch } from './batch.js';
+import type { MethodSource } from './chooseMethod.js';
 import type { EntryBase } from './examineFile.js';
-import type { RunWork } from './takeInRun.js';
+import type { MeasureDeps, WatchSession } from './watchTypes.js';
 
 /**
  * Measures captured files again when a person asked for it: after `--use-method`, or after `--measure-again`. Nothing is ever
@@ -11,12 +13,17 @@ import type { RunWork } from './takeInRun.js';
  *
  * @errors those of the object store and of `append`
  */
-export async function measureAgain({ session, run, held, config }: RunWork): Promise<Result<void>> {
+export async function measureAgain(
+  session: MeasureDeps & Pick<WatchSession, 'onEvent'>,
+  run: string,
+  held: HeldRecord,
+  method: MethodSource,
+): Promise<Result<void>> {
   const state = foldLedger(held.lines());
   const due = dueAgain(state);
   if (due.length === 0) return ok(undefined);
   session.onEvent({ kind: 'note', run, message: `${due.length} captured files are measured again, as asked for` });
-  const batch = makeBatch({ session, held, method: config.method, onCommitted: () => undefined });
+  const batch = makeBatch({ session, held, method, onCommitted: () => undefined });
   for (const input of due) {
     if (session.signal?.aborted) break;
     const bytes = await getRaw(session.context.port, held.folder, input.sha256!);

@@ -1,5 +1,5 @@
+import type { MeasureOutcome, Measurer } from '../record/measurer.js';
 import { type Killable, makeKillable } from './killableProcess.js';
-import type { MeasureOutcome, Measurer } from './stations.js';
 
 export interface PoolOptions {
   readonly workers: number;

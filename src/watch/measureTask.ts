@@ -4,7 +4,7 @@ import type { Method } from '../method/method.js';
 import { readMethod } from '../method/readMethod.js';
 import type { PointRecord } from '../point/pointRecord.js';
 import { processTimePoint } from '../point/processTimePoint.js';
-import type { MeasureTask } from './stations.js';
+import type { MeasureTask } from '../record/measurer.js';
 
 const methods = new Map<string, Method>();
 const methodsMax = 32;

@@ -1,5 +1,5 @@
+import { type MeasureTask, makeMeasurer } from '../record/measurer.js';
 import { measureTask } from './measureTask.js';
-import { type MeasureTask, makeMeasurer } from './stations.js';
 
 /** Runs in a process of its own: one file after the other comes in as a message, its outcome goes out. */
 const measurer = makeMeasurer(measureTask);

@@ -2,14 +2,14 @@ import { dirname, relative, resolve, sep } from 'node:path';
 import { fail, ok, type Problem, type Result } from '../base/result.js';
 import { makeFolders } from '../record/durable.js';
 import type { FilePort } from '../record/filePort.js';
+import type { Measurer } from '../record/measurer.js';
 import { lockOptions, type RecordContext } from '../record/recordContext.js';
 import { type RecordLock, takeLock } from '../record/recordLock.js';
 import { outputProblem, systemCode } from '../record/recordProblem.js';
-import type { Renderer } from './renderer.js';
+import type { Renderer } from '../record/renderer.js';
 import { makeSettling } from './settling.js';
 import { shareProblem } from './shareListing.js';
 import type { ShareReader } from './shareReader.js';
-import type { Measurer } from './stations.js';
 import type { WatchEvent, WatchSession, WatchSettings } from './watchTypes.js';
 
 export interface WatchParts {
@@ -66,7 +66,7 @@ function begin(parts: WatchParts, lock: RecordLock): OpenWatch {
 }
 
 /** Neither folder may lie inside the other, also by way of links: the share is never written to. */
-async function requireApart(port: FilePort, share: string, outputFolder: string): Promise<Result<void>> {
+export async function requireApart(port: FilePort, share: string, outputFolder: string): Promise<Result<void>> {
   let realShare: string;
   try {
     const stat = await port.statThrough(share);

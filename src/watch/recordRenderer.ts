@@ -1,12 +1,12 @@
 import { fail, ok, type Problem, type Result } from '../base/result.js';
-import type { FilePort } from '../record/filePort.js';
 import { deriveRunSeries } from '../record/deriveRunSeries.js';
+import type { FilePort } from '../record/filePort.js';
+import type { Derived, Renderer, RunOnIndex } from '../record/renderer.js';
 import { type DeriveSeries, factsOf, type RunFacts } from '../record/runFacts.js';
 import { foldLedger } from '../record/runState.js';
 import { renderSeriesCsv } from '../series/renderSeriesCsv.js';
 import { renderSeriesJson } from '../series/renderSeriesJson.js';
 import type { Series } from '../series/series.js';
-import type { Derived, Renderer, RunOnIndex } from './renderer.js';
 
 /** The functions that turn facts into bytes. */
 export interface RenderParts {

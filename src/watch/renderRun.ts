@@ -8,12 +8,12 @@ import { outputProblem, systemCode } from '../record/recordProblem.js';
 import type { HeldRecord } from '../record/runRecord.js';
 import { foldLedger } from '../record/runState.js';
 import type { RunMemory } from './runMemory.js';
-import type { WatchSession } from './watchTypes.js';
+import type { RenderDeps } from './watchTypes.js';
 
 const renderEveryMs = 60_000;
 
 /** Whether a run's derived files lag behind its record, or one of them is missing. */
-export async function isRenderDue(session: WatchSession, folder: Path, { lines, state }: RunMemory): Promise<boolean> {
+export async function isRenderDue(session: RenderDeps, folder: Path, { lines, state }: RunMemory): Promise<boolean> {
   if (lines.length === 0 || state.method === undefined) return false;
   if (state.rendered?.of !== dataHeadOf(lines).seq) return true;
   for (const name of Object.keys(state.rendered.files)) {
@@ -29,7 +29,7 @@ export async function isRenderDue(session: WatchSession, folder: Path, { lines, 
  * @param hasMore more files of this run wait: then it is done at most once a minute
  * @errors disk-full, output-not-writable, output-failed, object-missing, object-damaged
  */
-export async function renderRun(session: WatchSession, held: HeldRecord, hasMore: boolean): Promise<Result<void>> {
+export async function renderRun(session: RenderDeps, held: HeldRecord, hasMore: boolean): Promise<Result<void>> {
   const now = session.context.clock.monotonicMs();
   const key = pathText(held.folder);
   const before = session.renderedMs.get(key);

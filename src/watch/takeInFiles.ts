@@ -1,13 +1,13 @@
 import type { Flag } from '../base/flag.js';
 import { fail, ok, type Problem, type Result } from '../base/result.js';
 import type { InputEntry } from '../record/ledgerEntry.js';
+import type { MeasureOutcome, MeasureTask } from '../record/measurer.js';
 import { putPoint, putRaw } from '../record/objectStore.js';
 import type { HeldRecord } from '../record/runRecord.js';
 import { foldLedger, type RunState, resultKey } from '../record/runState.js';
 import type { MethodSource } from './chooseMethod.js';
 import type { EntryBase } from './examineFile.js';
-import type { MeasureOutcome, MeasureTask } from './stations.js';
-import type { WatchSession } from './watchTypes.js';
+import type { MeasureDeps } from './watchTypes.js';
 
 /** A file that is captured and has its measurement under way. */
 export interface Underway {
@@ -26,7 +26,7 @@ const deathsMax = 2;
  * @errors those of the object store
  */
 export async function capture(
-  session: WatchSession,
+  session: MeasureDeps,
   held: HeldRecord,
   entry: EntryBase,
   bytes: Uint8Array,
@@ -46,7 +46,7 @@ export async function capture(
  * @errors those of the object store and of `append`
  */
 export async function commit(
-  session: WatchSession,
+  session: MeasureDeps,
   held: HeldRecord,
   underway: Underway,
   method: MethodSource,
@@ -78,7 +78,7 @@ export async function appendInput(held: HeldRecord, entry: InputEntry): Promise<
 
 /** A file whose measuring killed its process is tried once more, with a note in the record; then it is set aside. */
 async function outcomeOf(
-  session: WatchSession,
+  session: MeasureDeps,
   held: HeldRecord,
   { outcome, sha256, task, entry }: Underway,
 ): Promise<Result<MeasureOutcome>> {

@@ -96,7 +96,7 @@ async function work(work: RunWork): Promise<Result<Pick<RunOutcome, 'taken' | 'h
   if (!noted.ok) return noted;
   await remember();
   if (session.signal?.aborted) return ok(files.value);
-  const again = await measureAgain(work);
+  const again = await measureAgain(session, work.run, held, work.config.method);
   if (!again.ok) return again;
   const rendered = await renderRun(session, held, files.value.hasMore);
   await remember();

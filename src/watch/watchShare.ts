@@ -1,8 +1,8 @@
 import type { Problem } from '../base/result.js';
 import { holdRecord } from '../record/runRecord.js';
+import { readSpace } from './diskSpace.js';
 import { runNameOf } from './takeInRun.js';
 import { type PassOutcome, watchPass } from './watchPass.js';
-import { readSpace } from './diskSpace.js';
 import type { WatchSession } from './watchTypes.js';
 
 const backOffMaxMs = 300_000;
@@ -82,7 +82,10 @@ async function onPresent(session: WatchSession, turn: Turn, pass: PassOutcome, j
     session.onEvent({ kind: 'note', message });
     await noteInRuns(session, pass, 'clock-jump', message, { seconds: jumpS });
   }
-  const problems = [...pass.problems, ...pass.runs.flatMap(({ run, problems: own }) => own.map((problem) => ({ ...problem, run })))];
+  const problems = [
+    ...pass.problems,
+    ...pass.runs.flatMap(({ run, problems: own }) => own.map((problem) => ({ ...problem, run }))),
+  ];
   const present = new Set<string>();
   for (const problem of problems) {
     const key = `${'run' in problem ? problem.run : ''} ${problem.code}`;

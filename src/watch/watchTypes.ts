@@ -1,13 +1,13 @@
 import type { Problem } from '../base/result.js';
 import type { SiteFile } from '../method/site.js';
 import type { Path } from '../record/filePort.js';
+import type { Measurer } from '../record/measurer.js';
 import type { RecordContext } from '../record/recordContext.js';
-import type { Renderer } from './renderer.js';
+import type { Renderer } from '../record/renderer.js';
 import type { Series } from '../series/series.js';
 import type { RunMemory } from './runMemory.js';
 import type { Settling } from './settling.js';
 import type { ShareReader } from './shareReader.js';
-import type { Measurer } from './stations.js';
 
 /** One thing that happened, for whoever looks on. Text from files is not yet escaped. */
 export interface WatchEvent {
@@ -70,3 +70,9 @@ export interface WatchSession {
   /** Given when the watch should end: the current append is finished, nothing new is begun. */
   readonly signal?: AbortSignal;
 }
+
+/** What capturing, measuring and committing need of a session. */
+export type MeasureDeps = Pick<WatchSession, 'context' | 'measurer' | 'signal'>;
+
+/** What rendering needs of a session. */
+export type RenderDeps = Pick<WatchSession, 'context' | 'renderer' | 'renderedMs' | 'series'>;

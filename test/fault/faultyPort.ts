@@ -53,7 +53,12 @@ export interface FaultyPort extends FilePort {
 export function makeFaultyPort(inner: FilePort, plan: (call: Call) => Fault | undefined): FaultyPort {
   const calls: Call[] = [];
   let isDead = false;
-  const run = async <T>(operation: Operation, path: Path, effect: () => Promise<T>, shorten?: (bytes: number) => Promise<T>): Promise<T> => {
+  const run = async <T>(
+    operation: Operation,
+    path: Path,
+    effect: () => Promise<T>,
+    shorten?: (bytes: number) => Promise<T>,
+  ): Promise<T> => {
     if (isDead) throw new Killed('dead');
     const call: Call = { number: calls.length + 1, operation, path: typeof path === 'string' ? path : path.toString('latin1') };
     calls.push(call);
@@ -88,7 +93,13 @@ export function makeFaultyPort(inner: FilePort, plan: (call: Call) => Fault | un
       const file = await run('open', path, () => inner.open(path, mode));
       const wrapped: OpenFile = {
         read: (target, position) => run('read', path, () => file.read(target, position)),
-        write: (bytes) => run('write', path, () => file.write(bytes), (count) => file.write(bytes.subarray(0, Math.min(count, bytes.byteLength)))),
+        write: (bytes) =>
+          run(
+            'write',
+            path,
+            () => file.write(bytes),
+            (count) => file.write(bytes.subarray(0, Math.min(count, bytes.byteLength))),
+          ),
         stat: () => run('fstat', path, () => file.stat()),
         sync: () => run('sync', path, () => file.sync()),
         dataSync: () => run('dataSync', path, () => file.dataSync()),

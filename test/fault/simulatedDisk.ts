@@ -38,9 +38,16 @@ function failure(code: string, path: string): Error {
 }
 
 const keyOf = (path: Path): string => (typeof path === 'string' ? Buffer.from(path).toString('latin1') : path.toString('latin1'));
-const partsOf = (path: Path): string[] => keyOf(path).split('/').filter((part) => part !== '' && part !== '.');
+const partsOf = (path: Path): string[] =>
+  keyOf(path)
+    .split('/')
+    .filter((part) => part !== '' && part !== '.');
 
-export function makeDisk(nowMs: () => number = () => 1_800_000_000_000, root?: Inode, space: FolderSpace = { freeBytes: 1e12, freeInodes: 1e9, inodes: 2e9, type: 0xef53 }): SimulatedDisk {
+export function makeDisk(
+  nowMs: () => number = () => 1_800_000_000_000,
+  root?: Inode,
+  space: FolderSpace = { freeBytes: 1e12, freeInodes: 1e9, inodes: 2e9, type: 0xef53 },
+): SimulatedDisk {
   let nextNumber = 2n;
   let opened = 0;
   let currentSpace = space;

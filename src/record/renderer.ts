@@ -1,7 +1,7 @@
 import type { Result } from '../base/result.js';
-import type { Path } from '../record/filePort.js';
-import type { LedgerLine } from '../record/ledgerLine.js';
 import type { Series } from '../series/series.js';
+import type { Path } from './filePort.js';
+import type { LedgerLine } from './ledgerLine.js';
 
 /** A run for the page that shows all runs. */
 export interface RunOnIndex {
