@@ -12,6 +12,7 @@ export interface CurveFit {
 type Model = (parameters: readonly number[], x: number) => number;
 
 const turnsMax = 400;
+const cautions = [1e-3, 10, 1e4];
 
 /**
  * Weighted nonlinear least squares by Levenberg and Marquardt with column scaling; derivatives by central differences.
@@ -32,10 +33,27 @@ export function fitCurve(
   weights: readonly number[],
   start: readonly number[],
 ): CurveFit {
+  // A hard start may lead into a far valley; more caution at the beginning finds another way. The lowest minimum counts.
+  let best: CurveFit | undefined;
+  for (const caution of cautions) {
+    const fit = descend(model, x, y, weights, start, caution);
+    if (!best || fit.chiSquare < best.chiSquare * (1 - 1e-9)) best = fit;
+  }
+  return best!;
+}
+
+function descend(
+  model: Model,
+  x: readonly number[],
+  y: readonly number[],
+  weights: readonly number[],
+  start: readonly number[],
+  caution: number,
+): CurveFit {
   let parameters = [...start];
   let residuals = residualsOf(model, parameters, x, y);
   let chiSquare = sumOf(residuals, weights);
-  let damping = 1e-3;
+  let damping = caution;
   let isConverged = false;
   let still = 0;
   for (let turn = 0; turn < turnsMax && !isConverged; turn += 1) {

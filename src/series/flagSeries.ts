@@ -53,21 +53,29 @@ function usualInterval(points: readonly SeriesPoint[]): number | undefined {
  * @source Hampel, J. Am. Stat. Assoc. 1974, 69, 383 (median absolute deviation)
  */
 function outlyingPoints(points: readonly SeriesPoint[]): Set<number> {
-  const used = points.flatMap(({ elapsedS, amounts, status }, index) =>
+  let used = points.flatMap(({ elapsedS, amounts, status }, index) =>
     amounts?.conversion && status !== 'set-aside' ? [{ index, t: elapsedS, ...amounts.conversion }] : [],
   );
+  const outlying = new Set<number>();
+  // One at a time, the worst first: an outlier also spoils what its neighbours expect.
+  for (let worst = worstOff(used); worst !== undefined; worst = worstOff(used)) {
+    outlying.add(worst);
+    used = used.filter(({ index }) => index !== worst);
+  }
+  return outlying;
+}
+
+function worstOff(used: readonly { index: number; t: number; value: number; u: number }[]): number | undefined {
   const offs = used.flatMap((point, k) => {
     const [left2, left, right, right2] = [used[k - 2], used[k - 1], used[k + 1], used[k + 2]];
     if (!left || !right || !left2 || !right2) return [];
-    const expected = cubicAt(point.t, [left2, left, right, right2]);
-    return [{ index: point.index, off: point.value - expected, u: point.u }];
+    return [{ index: point.index, off: Math.abs(point.value - cubicAt(point.t, [left2, left, right, right2])), u: point.u }];
   });
-  if (offs.length < 5) return new Set();
-  const sizes = offs.map(({ off }) => Math.abs(off)).sort((a, b) => a - b);
+  if (offs.length < 5) return undefined;
+  const sizes = offs.map(({ off }) => off).sort((a, b) => a - b);
   const spread = 1.4826 * sizes[Math.floor(sizes.length / 2)]!;
-  return new Set(
-    offs.filter(({ off, u }) => Math.abs(off) > 6 * Math.max(spread, u) && Math.abs(off) > 0.01).map(({ index }) => index),
-  );
+  const worst = offs.reduce((top, entry) => (entry.off > top.off ? entry : top));
+  return worst.off > 6 * Math.max(spread, worst.u) && worst.off > 0.01 ? worst.index : undefined;
 }
 
 /** Lagrange interpolation through four points. */
