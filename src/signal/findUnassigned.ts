@@ -1,8 +1,66 @@
 import type { Method } from '../method/method.js';
 import type { Spectrum } from '../spectrum/spectrum.js';
 import type { FittedRegion } from './fitRegions.js';
+import { isShadow } from './isShadow.js';
 import type { Unassigned } from './measured.js';
+import type { Peak } from './pickPeaks.js';
+import { readMultiplet } from './readMultiplet.js';
+import { suggestImpurity } from './suggestImpurity.js';
+import { scoreDefault, unexplainedPeaks } from './unexplainedPeaks.js';
+import type { Whitening } from './whiteningFilter.js';
 
-export function findUnassigned(_spectrum: Spectrum, _method: Method, _regions: readonly FittedRegion[]): readonly Unassigned[] {
-  return [];
+const countMax = 40;
+/** Lines further apart than this do not belong to one multiplet of protons. */
+const groupHz = 19;
+/** Within a group, smaller ones than this share of the tallest stand for themselves. */
+const edgePpm = 0.02;
+
+/**
+ * Lists what no species, solvent, water, reference, satellite or side band explains, grouped into multiplets.
+ *
+ * @param regions every fitted region, background included, with extra lines
+ * @param widthHz line width of the spectrum
+ * @returns by descending shift, at most 40: the largest
+ * @source  own; suggestions from published shifts (`suggestImpurity`)
+ */
+export function findUnassigned(
+  spectrum: Spectrum,
+  method: Method,
+  regions: readonly FittedRegion[],
+  { widthHz, whitening }: { readonly widthHz: number; readonly whitening: Whitening },
+): readonly Unassigned[] {
+  const { observeMhz } = spectrum;
+  const hidden = method.species
+    .flatMap((species) => species.signals)
+    .filter(({ pattern, rangePpm }) => pattern.isMultiplet || rangePpm !== undefined)
+    .map(({ rangePpm, shiftPpm, withinPpm }): readonly [number, number] =>
+      rangePpm ? [rangePpm[0] - edgePpm, rangePpm[1] + edgePpm] : [shiftPpm - withinPpm, shiftPpm + withinPpm],
+    );
+  const scoreMin = method.quality.unassigned_over_noise ?? scoreDefault;
+  const residual = unexplainedPeaks(spectrum, regions, widthHz, scoreMin, hidden);
+  const strong: Peak[] = [...residual.lines, ...residual.peaks].map(({ shiftHz, area }) => ({ shiftHz, area }));
+  const isBlind = (shiftHz: number) =>
+    residual.lines.some((line) => Math.abs(line.shiftHz - shiftHz) < 4 * line.widthHz) ||
+    hidden.some(([low, high]) => shiftHz / observeMhz > low && shiftHz / observeMhz < high);
+  const open = residual.peaks.filter((peak) => !isShadow(peak, residual.peaks, strong, spectrum.nucleus, isBlind));
+  return grouped(open)
+    .map((peaks) => readMultiplet(spectrum, residual.trace, peaks, widthHz, whitening))
+    .filter((found) => found.area > scoreMin * found.u)
+    .sort((a, b) => b.area - a.area || b.shiftPpm - a.shiftPpm)
+    .slice(0, countMax)
+    .sort((a, b) => b.shiftPpm - a.shiftPpm)
+    .map((found) => {
+      const suggestion = spectrum.nucleus === '1H' ? suggestImpurity(found.shiftPpm, found.pattern, method.solvent) : undefined;
+      return { ...found, ...(suggestion !== undefined ? { suggestion } : {}) };
+    });
+}
+
+function grouped(peaks: readonly Peak[]): Peak[][] {
+  const groups: Peak[][] = [];
+  for (const peak of peaks) {
+    const last = groups.at(-1);
+    if (last !== undefined && last.at(-1)!.shiftHz - peak.shiftHz < groupHz) last.push(peak);
+    else groups.push([peak]);
+  }
+  return groups;
 }

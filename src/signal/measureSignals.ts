@@ -2,6 +2,7 @@ import type { Method } from '../method/method.js';
 import type { Spectrum } from '../spectrum/spectrum.js';
 import { addExtraLines } from './addExtraLines.js';
 import { areaOf } from './areaOf.js';
+import { backgroundPrefix, backgroundTargets } from './backgroundTargets.js';
 import { describeSignal, isSignificant } from './describeSignal.js';
 import { drawStrip } from './drawStrip.js';
 import { findUnassigned } from './findUnassigned.js';
@@ -31,7 +32,8 @@ const narrowMisfit = 0.01;
  * @source  see the steps
  */
 export function measureSignals(spectrum: Spectrum, method: Method): Measurement {
-  const targets = signalTargets(method, spectrum.observeMhz);
+  const declared = signalTargets(method, spectrum.observeMhz);
+  const targets = [...declared, ...backgroundTargets(method, spectrum.observeMhz)];
   const whitening = whiteningFilter(spectrum.noiseCorrelation);
   const guessHz = guessWidth(spectrum, targets);
   const located = locateSignals(spectrum, targets, guessHz);
@@ -41,12 +43,13 @@ export function measureSignals(spectrum: Spectrum, method: Method): Measurement 
   const shape = learnShape(spectrum, regions, located, guessHz, whitening);
   const narrowed = shape.misfit > narrowMisfit ? groupRegions(spectrum, targets, located, widthOf, narrowMargin) : regions;
   const fitted = fitRegions(spectrum, narrowed, located, shape, whitening);
-  const explained = fitted.map((region) => addExtraLines(region, shape.misfit));
+  const explained = fitted.map((region) => (isBackground(region) ? region : addExtraLines(region, shape.misfit)));
 
   const byKey = new Map<string, MeasuredSignal>();
   const seenSpecies = speciesSeen(explained);
   explained.forEach((extra, home) => {
     for (const target of extra.region.targets) {
+      if (target.key.startsWith(backgroundPrefix)) continue;
       const strip = drawStrip(spectrum, extra, target);
       const described = describeSignal(
         { spectrum, whitening, misfit: shape.misfit, plain: fitted, extra: explained, home, seenSpecies },
@@ -55,18 +58,23 @@ export function measureSignals(spectrum: Spectrum, method: Method): Measurement 
       byKey.set(target.key, { ...described, ...(strip ? { strip } : {}) });
     }
   });
-  const ranged = targets.filter(({ lines }) => lines.length === 0);
+  const ranged = declared.filter(({ lines }) => lines.length === 0);
   for (const target of ranged) byKey.set(target.key, measureRange(spectrum, target, explained));
-  const signals = targets.map(({ key }) => byKey.get(key)!);
+  const signals = declared.map(({ key }) => byKey.get(key)!);
 
   return {
     signals,
-    unassigned: findUnassigned(spectrum, method, explained),
+    unassigned: findUnassigned(spectrum, method, explained, { widthHz: shape.widthHz, whitening }),
     solvents: measureSolvents(spectrum, method, explained),
     signalToNoise: tallestLine(signals, explained, spectrum.noise),
     lineShape: { widthHz: shape.widthHz, lorentzShare: shape.lorentzShare, asymmetry: spectrum.quality.referenceAsymmetry ?? 0 },
     flags: flagSignals(signals),
   };
+}
+
+/** Whether a region holds nothing that the method declares. */
+function isBackground({ region }: FittedRegion): boolean {
+  return region.targets.every(({ key }) => key.startsWith(backgroundPrefix));
 }
 
 /** Species of which at least one signal is there with its own pattern. */

@@ -79,7 +79,7 @@ function criterion(fit: RegionFit, scale = 1): number {
 /** Sum of squares that a candidate leaves when only its area is fitted. */
 function linearMisfit({ trace, window, widthHz }: Neighbourhood, candidate: CandidatePattern): number {
   const shape = new Float64Array(trace.length);
-  for (const { offsetHz, share } of levels(candidate)) {
+  for (const { offsetHz, share } of patternLevels(candidate)) {
     // A little wider than the lines are: the couplings are read off to a fraction of the width only.
     const line = { shiftHz: candidate.centreHz + offsetHz, area: share, widthHz: 1.3 * widthHz, phase: 0, lorentzShare: 1 };
     addLineValue(shape, line, { firstHz: window.firstHz, stepHz: window.stepHz });
@@ -95,7 +95,8 @@ function linearMisfit({ trace, window, widthHz }: Neighbourhood, candidate: Cand
   return total - (match > 0 ? match ** 2 / energy : 0);
 }
 
-function levels({ neighbours, couplingsHz }: CandidatePattern) {
+/** The lines of a proposed pattern, coincident ones apart. */
+export function patternLevels({ neighbours, couplingsHz }: CandidatePattern) {
   const splittings = neighbours.map((n) => ({ letter: splittingLetters[n]!, neighbours: n }));
   return levelsOf({ splittings }, couplingsHz);
 }
@@ -116,6 +117,6 @@ function withRival({ fit, widthHz }: Neighbourhood, candidate: CandidatePattern)
     parameters.push({ kind: 'coupling', start: 0, mean: 0, sigma: 2, low: -3, high: 3 });
     return parameters.length - 1;
   });
-  const term: Term = { ...old, lines: withComponents(levels(candidate), model.components), couplings };
+  const term: Term = { ...old, lines: withComponents(patternLevels(candidate), model.components), couplings };
   return { ...model, parameters, terms: [term] };
 }

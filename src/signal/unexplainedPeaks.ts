@@ -1,0 +1,60 @@
+import type { Spectrum } from '../spectrum/spectrum.js';
+import { extraPrefix } from './addExtraLines.js';
+import type { FittedRegion } from './fitRegions.js';
+import { type Peak, pickPeaks } from './pickPeaks.js';
+import { type FittedLine, sticksOf, tailsOf } from './tailsOf.js';
+
+/** Areas over their noise from which a line is reported; `quality.unassigned_over_noise` of a method overrides it. */
+export const scoreDefault = 5;
+/** Beside a line, what this part of its height explains may be a fault of its shape. */
+const shapeShare = 0.01;
+const shapeReachWidths = 12;
+
+/** What is left of a spectrum when all that was fitted is taken off. */
+export interface Residual {
+  /** shape (n), units of the spectrum. */
+  readonly trace: Float64Array;
+  readonly peaks: readonly Peak[];
+  /** Lines that are explained, tall ones first. */
+  readonly lines: readonly FittedLine[];
+}
+
+/**
+ * Picks the lines that no fitted signal explains.
+ *
+ * @param widthHz   line width of the spectrum
+ * @param scoreMin  in standard uncertainties of the area of one line
+ * @param hiddenPpm ranges [low, high] where lines were never declared singly (`m`): nothing there is unexplained
+ * @returns peaks by descending shift
+ * @source  see `pickPeaks`
+ */
+export function unexplainedPeaks(
+  spectrum: Spectrum,
+  regions: readonly FittedRegion[],
+  widthHz: number,
+  scoreMin: number,
+  hiddenPpm: readonly (readonly [number, number])[],
+): Residual {
+  const { real, noise, stepHz, firstPpm, observeMhz } = spectrum;
+  const declared = regions.map(({ fit }) => ({ fit: withoutExtras(fit) }));
+  const model = tailsOf(spectrum, 0, real.length, declared);
+  const trace = real.map((value, i) => value - model[i]!);
+  const lines = regions.flatMap(({ fit }) => sticksOf(fit)).filter(({ key }) => !key.startsWith(extraPrefix));
+  const areaU = 1.5 * noise * Math.sqrt(Math.PI * widthHz * stepHz);
+  const found = pickPeaks(trace, firstPpm * observeMhz, stepHz, widthHz, scoreMin * areaU);
+  const tall = lines.filter((line) => line.area > 0).sort((a, b) => b.area - a.area || b.shiftHz - a.shiftHz);
+  const peaks = found.filter((peak) => {
+    const ppm = peak.shiftHz / observeMhz;
+    if (hiddenPpm.some(([low, high]) => ppm >= low && ppm <= high)) return false;
+    const shadow = tall.reduce((sum, line) => {
+      const off = Math.abs(line.shiftHz - peak.shiftHz) / line.widthHz;
+      return off < shapeReachWidths ? sum + (shapeShare * line.area * (widthHz / line.widthHz)) / (1 + off * off) : sum;
+    }, 0);
+    return peak.area > 3 * shadow;
+  });
+  return { trace, peaks, lines: tall };
+}
+
+function withoutExtras(fit: FittedRegion['fit']): FittedRegion['fit'] {
+  return { ...fit, areas: fit.areas.map((area, t) => (fit.model.terms[t]!.key.startsWith(extraPrefix) ? 0 : area)) };
+}
