@@ -121,7 +121,8 @@ function makeLedger(context: RecordContext, open: OpenFile, path: Path, lines: L
     if (before.sizeBytes !== sizeBytes) return false;
     await writeAll(open, bytes);
     const after = await open.stat();
-    if (after.sizeBytes !== sizeBytes + bytes.length) return false;
+    if (after.sizeBytes > sizeBytes + bytes.length) return false;
+    if (after.sizeBytes < sizeBytes + bytes.length) throw Object.assign(new Error('a write lost bytes'), { code: 'EIO' });
     await open.dataSync();
     sizeBytes += bytes.length;
     return true;

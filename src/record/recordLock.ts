@@ -52,7 +52,10 @@ export async function takeLock(options: LockOptions): Promise<Result<RecordLock>
   try {
     return await take(options, self, lockName, 0);
   } catch (cause) {
-    return fail(outputProblem(cause, pathText(joinPath(options.folder, lockName))));
+    const problem = outputProblem(cause, pathText(joinPath(options.folder, lockName)));
+    // The name may have been given before the failure: a lock of our own must not shut us out.
+    await release(options.port, options.folder, lockName, self.token).catch(() => undefined);
+    return fail(problem);
   }
 }
 

@@ -4,7 +4,7 @@ import { pathText } from '../record/bytePath.js';
 import type { Path } from '../record/filePort.js';
 import type { AmendmentEntry } from '../record/ledgerEntry.js';
 import { getRaw, putRaw } from '../record/objectStore.js';
-import { recordProblem } from '../record/recordProblem.js';
+import { recordProblem, systemCode } from '../record/recordProblem.js';
 import { loadMethod } from '../record/runContents.js';
 import { type HeldRecord, holdRecord, readLedgerBytes } from '../record/runRecord.js';
 import { foldLedger } from '../record/runState.js';
@@ -42,12 +42,9 @@ export async function amendRun(deps: AmendDeps, folder: Path, request: AmendRequ
     );
   }
   const adoptsObjects = request.action === 'adopt-objects';
-  const isThere = (await readLedgerBytes(deps.context.port, folder)) !== undefined;
-  if (!isThere && !adoptsObjects) {
-    const hint = 'Give the folder of one run, which holds ledger.jsonl.';
-    return fail(recordProblem('record-missing', `${pathText(folder)} holds no record`, { hint }));
-  }
-  if (isThere && adoptsObjects) return fail(usage('amend-useless', 'the record has its ledger; there is nothing to adopt'));
+  const present = await requireLedger(deps, folder);
+  if (!present.ok && !adoptsObjects) return present;
+  if (present.ok && adoptsObjects) return fail(usage('amend-useless', 'the record has its ledger; there is nothing to adopt'));
   const held = await holdPatiently(deps, folder, adoptsObjects);
   if (!held.ok) return held;
   try {
@@ -130,10 +127,8 @@ function usage(code: string, message: string, hint?: string): Problem {
  * @errors record-missing, record-held, those of the record and of rendering
  */
 export async function renderAgain(deps: AmendDeps, folder: Path): Promise<Result<void>> {
-  if ((await readLedgerBytes(deps.context.port, folder)) === undefined) {
-    const hint = 'Give the folder of one run, which holds ledger.jsonl.';
-    return fail(recordProblem('record-missing', `${pathText(folder)} holds no record`, { hint }));
-  }
+  const present = await requireLedger(deps, folder);
+  if (!present.ok) return present;
   const held = await holdPatiently(deps, folder, false);
   if (!held.ok) return held;
   try {
@@ -141,4 +136,14 @@ export async function renderAgain(deps: AmendDeps, folder: Path): Promise<Result
   } finally {
     await held.value.release();
   }
+}
+
+async function requireLedger({ context }: AmendDeps, folder: Path): Promise<Result<void>> {
+  try {
+    if ((await readLedgerBytes(context.port, folder)) !== undefined) return ok(undefined);
+  } catch (cause) {
+    if (systemCode(cause) === undefined) throw cause;
+  }
+  const hint = 'Give the folder of one run, which holds ledger.jsonl.';
+  return fail(recordProblem('record-missing', `${pathText(folder)} holds no record that can be read`, { hint }));
 }

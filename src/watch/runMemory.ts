@@ -58,7 +58,11 @@ export async function reflect(
   lines: readonly LedgerLine[],
   statCache: StatCache,
 ): Promise<RunMemory> {
-  const stat = await statLedger(context, folder);
+  // Without it the ledger is read again in the next pass: nothing else follows.
+  const stat = await statLedger(context, folder).catch((cause: unknown) => {
+    if (systemCode(cause) === undefined) throw cause;
+    return undefined;
+  });
   const ledger = stat !== undefined ? { ledger: { sizeBytes: stat.sizeBytes, inode: stat.inode } } : {};
   return { lines: [...lines], state: foldLedger(lines), ...ledger, hasTornTail: false, statCache };
 }

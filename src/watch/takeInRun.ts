@@ -63,7 +63,8 @@ export async function takeInRun(session: WatchSession, listing: RunListing): Pro
   const longest = plan.waiting.reduce((most, { waitMs }) => Math.max(most, waitMs), 0);
   const wait = plan.waiting.length > 0 ? { waitMs: longest } : {};
   const { warnings } = config.value;
-  if (!hasWork(config.value, plan, memory) && !(await isRenderDue(session, folder, memory))) return done(warnings, wait);
+  const mustWork = (session.isLastPass && plan.waiting.length > 0) || hasWork(config.value, plan, memory);
+  if (!mustWork && !(await isRenderDue(session, folder, memory))) return done(warnings, wait);
   const held = await holdRecord({ context, outputFolder: settings.outputFolder, names: listing.names, run });
   if (!held.ok) return done([...warnings, held.problem], wait);
   try {

@@ -36,6 +36,8 @@ export type Fault =
   | { readonly kind: 'fail'; readonly code: string }
   /** A write that takes some bytes and then fails, or says so by its count. */
   | { readonly kind: 'short'; readonly bytes: number; readonly code?: string }
+  /** A write that loses its last bytes and reports success. */
+  | { readonly kind: 'lie'; readonly lost: number }
   /** The process dies before or after the call took effect. */
   | { readonly kind: 'kill'; readonly when: 'before' | 'after' }
   /** Never answers. */
@@ -67,6 +69,8 @@ export function makeFaultyPort(inner: FilePort, plan: (call: Call) => Fault | un
       case undefined:
         return effect();
       case 'fail':
+        // A close that fails has closed all the same. (close(2))
+        if (operation === 'close') await effect();
         throw Object.assign(new Error(`${fault.code}: injected at call ${call.number}`), { code: fault.code });
       case 'short': {
         if (shorten === undefined) return effect();
@@ -74,6 +78,10 @@ export function makeFaultyPort(inner: FilePort, plan: (call: Call) => Fault | un
         if (fault.code === undefined) return written;
         throw Object.assign(new Error(`${fault.code}: injected at call ${call.number}`), { code: fault.code });
       }
+      case 'lie':
+        if (shorten === undefined) return effect();
+        await shorten(-fault.lost);
+        return Number.NaN as T;
       case 'kill':
         if (fault.when === 'after') await effect().catch(() => undefined);
         isDead = true;
@@ -93,13 +101,12 @@ export function makeFaultyPort(inner: FilePort, plan: (call: Call) => Fault | un
       const file = await run('open', path, () => inner.open(path, mode));
       const wrapped: OpenFile = {
         read: (target, position) => run('read', path, () => file.read(target, position)),
-        write: (bytes) =>
-          run(
-            'write',
-            path,
-            () => file.write(bytes),
-            (count) => file.write(bytes.subarray(0, Math.min(count, bytes.byteLength))),
-          ),
+        write: async (bytes) => {
+          const shorten = (count: number) =>
+            file.write(bytes.subarray(0, count < 0 ? Math.max(0, bytes.byteLength + count) : count));
+          const written = await run('write', path, () => file.write(bytes), shorten);
+          return Number.isNaN(written) ? bytes.byteLength : written;
+        },
         stat: () => run('fstat', path, () => file.stat()),
         sync: () => run('sync', path, () => file.sync()),
         dataSync: () => run('dataSync', path, () => file.dataSync()),

@@ -23,8 +23,8 @@ export interface SimulatedDisk {
   afterPowerCut(): SimulatedDisk;
   /** Every regular file by its path, as bytes; for comparing. */
   files(under?: string): Map<string, Buffer>;
-  write(path: string, bytes: Uint8Array | string, modifiedMs?: number): void;
-  makeFolders(path: string): void;
+  write(path: Path, bytes: Uint8Array | string, modifiedMs?: number): void;
+  makeFolders(path: Path): void;
   putLink(path: string, target: string): void;
   putOther(path: string): void;
   remove(path: string): void;
@@ -82,6 +82,13 @@ export function makeDisk(
     const node = folder.names!.get(name);
     if (node === undefined) throw failure('ENOENT', keyOf(path));
     return node;
+  };
+  const findOrNothing = (path: Path): Inode | undefined => {
+    try {
+      return find(path);
+    } catch {
+      return undefined;
+    }
   };
   const follow = (path: Path, depth = 0): Inode => {
     const node = find(path);
@@ -207,12 +214,12 @@ export function makeDisk(
           else if (child.kind === 'file') found.set(`${path}/${name}`, child.bytes);
         }
       };
-      const start = under === '' ? top : find(under);
-      walk(start, under);
+      const start = under === '' ? top : findOrNothing(under);
+      if (start !== undefined) walk(start, under);
       return new Map([...found].sort(([a], [b]) => (a < b ? -1 : 1)));
     },
     write: (path, bytes, modifiedMs) => {
-      disk.makeFolders(path.slice(0, path.lastIndexOf('/')));
+      disk.makeFolders(Buffer.from(partsOf(path).slice(0, -1).join('/'), 'latin1'));
       const { folder, name } = place(path);
       const node = folder.names!.get(name) ?? makeInode('file');
       node.bytes = Buffer.from(bytes);
@@ -276,6 +283,7 @@ function durableCopy(node: Inode, seen: Map<Inode, Inode>): Inode {
 function largest(node: Inode): bigint {
   return [...(node.names?.values() ?? [])].reduce((most, child) => {
     const own = largest(child);
+    // biome-ignore lint/complexity/useMathMinMax: these are big integers
     return own > most ? own : most;
   }, node.number);
 }
