@@ -48,7 +48,7 @@ export function addExtraLines(fitted: FittedRegion, misfit: number): FittedRegio
     const next = fitRegion(fitted.window, withExtra(fit.model, fit.values, candidate.shiftHz, widthHz, extra));
     const area = next.areas[next.areas.length - 1]!;
     const index = next.areas.length - 1;
-    const u = Math.sqrt(next.covariance[index * next.size + index]!);
+    const u = Math.sqrt(next.covarianceOf()[index * next.size + index]!);
     if (!(area > 3 * u && area > areaMin) || fit.cost - next.cost < scoreMin ** 2 - 4) break;
     const place = next.values[next.model.terms[index]!.shift]!;
     const isNear = lines.some(({ shiftHz }) => Math.abs(shiftHz - place) < nearWidths * widthHz);

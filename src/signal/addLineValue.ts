@@ -21,13 +21,21 @@ export function addLineValue(sum: Float64Array, line: PlacedLine, axis: TermAxis
   const cosine = Math.cos(line.phase);
   const sine = Math.sin(line.phase);
   const decay = Math.PI * widthHz;
+  const blur = axis.blur ?? 0;
   const ripple = rippleOf(line.shiftHz, widthHz, axis);
   let { cutRe, cutIm } = ripple;
   for (let i = 0; i < sum.length; i += 1) {
     const offset = 2 * Math.PI * (axis.firstHz - i * axis.stepHz - line.shiftHz);
     const norm = 2 / (decay * decay + offset * offset);
-    const pRe = decay * norm;
-    const pIm = -offset * norm;
+    let pRe = decay * norm;
+    let pIm = -offset * norm;
+    if (blur > 0) {
+      const bRe = -blur * (pRe * pRe - pIm * pIm);
+      const bIm = -2 * blur * pRe * pIm;
+      const blurredRe = pRe * (1 + bRe) - pIm * bIm;
+      pIm = pIm * (1 + bRe) + pRe * bIm;
+      pRe = blurredRe;
+    }
     let absorption = pRe;
     let dispersion = pIm;
     if (ripple.seconds > 0) {

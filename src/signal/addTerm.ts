@@ -33,6 +33,9 @@ export interface TermAxis {
   readonly stepHz: number;
   /** Seconds after which the decay was cut; absent: it died out. */
   readonly acquisitionS?: number;
+  /** See `BinnedSpectrum`; absent: points are not means. */
+  readonly blur?: number;
+  readonly rippleFactor?: number;
 }
 
 /** Empty columns for a term. */
@@ -89,19 +92,34 @@ function addLine(
   const decay = Math.PI * widthHz;
   const ripple = rippleOf(place, widthHz, axis);
   let { cutRe, cutIm } = ripple;
+  const blur = axis.blur ?? 0;
   const hasGauss = lorentzShare < 1 || state.isShareFree;
   const points = value.length;
   for (let i = 0; i < points; i += 1) {
     const offset = 2 * Math.PI * (axis.firstHz - i * axis.stepHz - place);
     const norm = 2 / (decay * decay + offset * offset);
     // P = 2 / z.
-    const pRe = decay * norm;
-    const pIm = -offset * norm;
-    // S = P (1 - Q); dS/dz = P T Q - P S / 2.
+    let pRe = decay * norm;
+    let pIm = -offset * norm;
+    // dP/dz = -P^2 / 2.
+    let dRe = -(pRe * pRe - pIm * pIm) / 2;
+    let dIm = -pRe * pIm;
+    if (blur > 0) {
+      // The mean over a bin: P (1 - b P^2), dP/dz (1 - 3 b P^2), with P^2 = -2 dP/dz.
+      const bRe = 2 * blur * dRe;
+      const bIm = 2 * blur * dIm;
+      const blurredRe = pRe * (1 + bRe) - pIm * bIm;
+      pIm = pIm * (1 + bRe) + pRe * bIm;
+      pRe = blurredRe;
+      const slopeRe = dRe * (1 + 3 * bRe) - 3 * dIm * bIm;
+      dIm = dIm * (1 + 3 * bRe) + 3 * dRe * bIm;
+      dRe = slopeRe;
+    }
+    // S = P (1 - Q); dS/dz = dP/dz (1 - Q) + P T Q.
     const sRe = pRe * (1 - cutRe) + pIm * cutIm;
     const sIm = pIm * (1 - cutRe) - pRe * cutIm;
-    let zRe = -(pRe * sRe - pIm * sIm) / 2;
-    let zIm = -(pRe * sIm + pIm * sRe) / 2;
+    let zRe = dRe * (1 - cutRe) + dIm * cutIm;
+    let zIm = dIm * (1 - cutRe) - dRe * cutIm;
     if (ripple.seconds > 0) {
       zRe += ripple.seconds * (pRe * cutRe - pIm * cutIm);
       zIm += ripple.seconds * (pRe * cutIm + pIm * cutRe);
@@ -131,8 +149,8 @@ function addLine(
 /** exp(-z T) at the first point, and its turn from one point to the next. */
 export function rippleOf(place: number, widthHz: number, axis: TermAxis) {
   const seconds = axis.acquisitionS ?? 0;
-  const size = seconds > 0 ? Math.exp(-Math.PI * widthHz * seconds) : 0;
-  if (size < rippleMin) return { seconds: 0, cutRe: 0, cutIm: 0, turnRe: 1, turnIm: 0 };
+  const size = seconds > 0 ? Math.exp(-Math.PI * widthHz * seconds) * (axis.rippleFactor ?? 1) : 0;
+  if (Math.abs(size) < rippleMin) return { seconds: 0, cutRe: 0, cutIm: 0, turnRe: 1, turnIm: 0 };
   const angle = -2 * Math.PI * (axis.firstHz - place) * seconds;
   const turn = 2 * Math.PI * axis.stepHz * seconds;
   return {

@@ -12,7 +12,8 @@ import { choleskyFactor, choleskyInverse } from './solveSymmetric.js';
  * @source  shared formulas, sections 9 and 10 (ICH Q2: detection 3.3 u0, quantitation 10 u0)
  */
 export function areaOf({ fit, window }: FittedRegion, t: number): { area: number; u: number; u0: number } {
-  const { covariance, size, areas, model } = fit;
+  const { size, areas, model } = fit;
+  const covariance = fit.covarianceOf();
   const linear = model.terms.length + 2;
   const degrees = Math.max(1, fit.whitened.length - size);
   const reduced = fit.chiSquare / degrees;

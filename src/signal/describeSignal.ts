@@ -1,9 +1,10 @@
-import type { Spectrum } from '../spectrum/spectrum.js';
 import { areaOf, summedArea } from './areaOf.js';
+import type { BinnedSpectrum } from './binSpectrum.js';
 import type { FittedRegion } from './fitRegions.js';
 import type { MeasuredSignal } from './measured.js';
 import { misfitOf } from './misfitOf.js';
-import { neighbourhood } from './neighbourhood.js';
+import { couplingReachHz, neighbourhood } from './neighbourhood.js';
+import type { Peak } from './pickPeaks.js';
 import { plainIntegral } from './plainIntegral.js';
 import { rivalPattern } from './rivalPattern.js';
 import type { Target } from './signalTargets.js';
@@ -15,10 +16,12 @@ import type { Whitening } from './whiteningFilter.js';
 const presentFactor = 3.3;
 /** Relative misfit from which another pattern is worth trying. */
 const doubtfulMisfit = 0.04;
+/** Lines below this share of the signal's tallest one make no other pattern. */
+const strangerShare = 0.04;
 
 /** What the description of a signal draws on. */
 export interface SignalContext {
-  readonly spectrum: Spectrum;
+  readonly spectrum: BinnedSpectrum;
   readonly whitening: Whitening;
   /** Relative misfit of the shared line shape. */
   readonly misfit: number;
@@ -29,6 +32,8 @@ export interface SignalContext {
   readonly home: number;
   /** Species of which some signal was found with its pattern. */
   readonly seenSpecies: ReadonlySet<string>;
+  /** Lines that nothing declared explains. */
+  readonly unexplained: readonly Peak[];
 }
 
 /**
@@ -49,7 +54,7 @@ export function describeSignal(context: SignalContext, target: Target): Measured
   const isPresent = isSignificant(area, u, u0);
   const shiftFree = fit.free.indexOf(term.shift);
   const shiftIndex = fit.model.terms.length + 2 + shiftFree;
-  const shiftU = shiftFree < 0 ? undefined : Math.sqrt(fit.covariance[shiftIndex * fit.size + shiftIndex]!) / observeMhz;
+  const shiftU = shiftFree < 0 ? undefined : Math.sqrt(fit.covarianceOf()[shiftIndex * fit.size + shiftIndex]!) / observeMhz;
   const doubt = signal.pattern.isBroad ? {} : doubtsOf(context, target, isPresent);
   const isExpected = context.seenSpecies.has(species.id) || species.signals.length === 1;
   const judged = verdictOf(spectrum, { extra, target, area, isPresent, isExpected, ...doubt });
@@ -95,6 +100,7 @@ function doubtsOf(context: SignalContext, target: Target, isPresent: boolean): P
   const home = context.plain[context.home]!;
   const isStrong = isPresent || context.extra[context.home]!.fit.areas.length > home.fit.areas.length;
   if (!isStrong) return {};
+  if (!hasStrangers(context, target) && misfitOf(home, target) < doubtfulMisfit) return {};
   const near = neighbourhood(context.spectrum, context.plain, home, target, context);
   const { all, strange } = strangeLines(near);
   if (strange.length === 0 && misfitOf(near, target) < doubtfulMisfit) return {};
@@ -104,8 +110,18 @@ function doubtsOf(context: SignalContext, target: Target, isPresent: boolean): P
   return { near: { ...near, strangeShare }, ...(rival ? { rival } : {}) };
 }
 
+/** Whether lines that nothing explains stand where they could belong to the signal. */
+function hasStrangers({ unexplained, extra, home }: SignalContext, target: Target): boolean {
+  const own = sticksOf(extra[home]!.fit).filter(({ key }) => key === target.key);
+  const high = Math.max(...own.map(({ shiftHz }) => shiftHz)) + couplingReachHz;
+  const low = Math.min(...own.map(({ shiftHz }) => shiftHz)) - couplingReachHz;
+  const least = strangerShare * Math.max(...own.map(({ area }) => area));
+  return unexplained.some(({ shiftHz, area }) => shiftHz > low && shiftHz < high && area > least);
+}
+
 function correlations(fitted: FittedRegion, t: number): MeasuredSignal['fittedWith'] {
-  const { covariance, size, model } = fitted.fit;
+  const { size, model } = fitted.fit;
+  const covariance = fitted.fit.covarianceOf();
   const keys = new Set(fitted.region.targets.map(({ key }) => key));
   return model.terms.flatMap(({ key }, other) => {
     if (other === t || !keys.has(key)) return [];

@@ -1,43 +1,34 @@
 import type { Method } from '../method/method.js';
-import type { Spectrum } from '../spectrum/spectrum.js';
-import type { FittedRegion } from './fitRegions.js';
+import type { BinnedSpectrum } from './binSpectrum.js';
 import { isShadow } from './isShadow.js';
 import type { Unassigned } from './measured.js';
 import type { Peak } from './pickPeaks.js';
 import { readMultiplet } from './readMultiplet.js';
 import { suggestImpurity } from './suggestImpurity.js';
-import { scoreDefault, unexplainedPeaks } from './unexplainedPeaks.js';
+import { hiddenRanges, type Residual, scoreDefault } from './unexplainedPeaks.js';
 import type { Whitening } from './whiteningFilter.js';
 
 const countMax = 40;
 /** Lines further apart than this do not belong to one multiplet of protons. */
 const groupHz = 19;
-/** Within a group, smaller ones than this share of the tallest stand for themselves. */
-const edgePpm = 0.02;
 
 /**
  * Lists what no species, solvent, water, reference, satellite or side band explains, grouped into multiplets.
  *
- * @param regions every fitted region, background included, with extra lines
+ * @param residual what is left when all that was fitted is taken off
  * @param widthHz line width of the spectrum
  * @returns by descending shift, at most 40: the largest
  * @source  own; suggestions from published shifts (`suggestImpurity`)
  */
 export function findUnassigned(
-  spectrum: Spectrum,
+  spectrum: BinnedSpectrum,
   method: Method,
-  regions: readonly FittedRegion[],
+  residual: Residual,
   { widthHz, whitening }: { readonly widthHz: number; readonly whitening: Whitening },
 ): readonly Unassigned[] {
   const { observeMhz } = spectrum;
-  const hidden = method.species
-    .flatMap((species) => species.signals)
-    .filter(({ pattern, rangePpm }) => pattern.isMultiplet || rangePpm !== undefined)
-    .map(({ rangePpm, shiftPpm, withinPpm }): readonly [number, number] =>
-      rangePpm ? [rangePpm[0] - edgePpm, rangePpm[1] + edgePpm] : [shiftPpm - withinPpm, shiftPpm + withinPpm],
-    );
+  const hidden = hiddenRanges(method);
   const scoreMin = method.quality.unassigned_over_noise ?? scoreDefault;
-  const residual = unexplainedPeaks(spectrum, regions, widthHz, scoreMin, hidden);
   const strong: Peak[] = [...residual.lines, ...residual.peaks].map(({ shiftHz, area }) => ({ shiftHz, area }));
   const isBlind = (shiftHz: number) =>
     residual.lines.some((line) => Math.abs(line.shiftHz - shiftHz) < 4 * line.widthHz) ||

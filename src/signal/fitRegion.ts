@@ -87,15 +87,18 @@ function finish(
 ): RegionFit {
   const n = Math.round(Math.sqrt(current.matrix.length));
   const inverse = choleskyInverse(choleskyFactor(current.matrix, n), n);
-  const meat = current.sandwich();
   const { residual } = current;
+  let covariance: Float64Array | undefined;
   return {
     model,
     areas: current.areas,
     level: current.level,
     slopePerHz: current.slopePerHz,
     values,
-    covariance: sandwichOf(inverse, meat, n),
+    covarianceOf: () => {
+      covariance ??= sandwichOf(inverse, current.sandwich(), n);
+      return covariance;
+    },
     size: n,
     chiSquare: current.chiSquare,
     cost: current.cost,

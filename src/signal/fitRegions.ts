@@ -1,4 +1,4 @@
-import type { Spectrum } from '../spectrum/spectrum.js';
+import type { BinnedSpectrum } from './binSpectrum.js';
 import { buildRegionModel, type SharedShape } from './buildRegionModel.js';
 import { fitRegion } from './fitRegion.js';
 import type { Region } from './groupRegions.js';
@@ -24,7 +24,7 @@ export interface FittedRegion {
  * @source  block-wise relaxation (Gauss-Seidel, textbook)
  */
 export function fitRegions(
-  spectrum: Spectrum,
+  spectrum: BinnedSpectrum,
   regions: readonly Region[],
   located: ReadonlyMap<string, Located>,
   shape: SharedShape,
@@ -56,7 +56,7 @@ function restart(fit: RegionFit) {
 }
 
 /** Whether the tails to take off changed by more than a fiftieth of the noise anywhere. */
-function differ(window: RegionWindow, spectrum: Spectrum, outside: Float64Array): boolean {
+function differ(window: RegionWindow, spectrum: BinnedSpectrum, outside: Float64Array): boolean {
   for (let i = 0; i < window.data.length; i += 1) {
     const before = spectrum.real[window.from + i]! - window.data[i]!;
     if (Math.abs(before - outside[i]!) > 0.02 * window.noise) return true;

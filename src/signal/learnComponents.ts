@@ -1,4 +1,4 @@
-import type { Spectrum } from '../spectrum/spectrum.js';
+import type { BinnedSpectrum } from './binSpectrum.js';
 import type { SharedShape } from './buildRegionModel.js';
 import { fitRegion } from './fitRegion.js';
 import { type FittedRegion, fitRegions } from './fitRegions.js';
@@ -23,7 +23,7 @@ const scoreMin = 0.1;
  * @source  forward selection; every candidate is a copy of the whole pattern with its own place and width
  */
 export function learnComponents(
-  spectrum: Spectrum,
+  spectrum: BinnedSpectrum,
   fits: readonly FittedRegion[],
   located: ReadonlyMap<string, Located>,
   plain: SharedShape,

@@ -1,4 +1,4 @@
-import type { Spectrum } from '../spectrum/spectrum.js';
+import type { BinnedSpectrum } from './binSpectrum.js';
 import type { SharedShape } from './buildRegionModel.js';
 import { type FittedRegion, fitRegions } from './fitRegions.js';
 import type { Region } from './groupRegions.js';
@@ -34,7 +34,7 @@ const aloneMisfitMax = 0.005;
  * @source  own; inhomogeneous line as a sum of shifted Lorentzians (common practice of reference deconvolution, Morris 1988)
  */
 export function learnShape(
-  spectrum: Spectrum,
+  spectrum: BinnedSpectrum,
   regions: readonly Region[],
   located: ReadonlyMap<string, Located>,
   guessHz: number,

@@ -50,6 +50,12 @@ export function locateSignals(spectrum: Spectrum, targets: readonly Target[], wi
   return located;
 }
 
+/** Lines that matter for finding a place: the faint ones of strong coupling do not. */
+function shownLines({ lines }: Target): Target['lines'] {
+  const tallest = lines.reduce((most, { share }) => Math.max(most, share), 0);
+  return lines.filter(({ share }) => share > 0.02 * tallest);
+}
+
 interface Place {
   readonly shiftHz: number;
   readonly gain: number;
@@ -60,7 +66,8 @@ interface Place {
 
 function bestPlace(spectrum: Spectrum, left: Float64Array, target: Target, widthHz: number): Place {
   const { observeMhz, firstPpm, stepHz, noise } = spectrum;
-  const { signal, lines } = target;
+  const { signal } = target;
+  const lines = shownLines(target);
   const width = signal.pattern.isBroad ? 8 * widthHz : widthHz;
   const firstHz = firstPpm * observeMhz;
   const centre = signal.shiftPpm * observeMhz;
@@ -103,30 +110,47 @@ function bestPlace(spectrum: Spectrum, left: Float64Array, target: Target, width
 
 /** What the matched filter answers at each line of a pattern of unit area: its own share and what neighbours add. */
 function expectedResponses(lines: Target['lines'], widthHz: number, stepHz: number): number[] {
-  const pattern = new Float64Array(
-    Math.ceil((lines[0]!.offsetHz - lines.at(-1)!.offsetHz + 2 * kernelWidths * widthHz) / stepHz) + 3,
-  );
-  const firstHz = lines[0]!.offsetHz + kernelWidths * widthHz;
-  for (const { offsetHz, share } of lines) {
-    for (let i = 0; i < pattern.length; i += 1) {
-      const u = (2 * (firstHz - i * stepHz - offsetHz)) / widthHz;
-      pattern[i] = pattern[i]! + (2 * share) / (Math.PI * widthHz * (1 + u * u));
+  const { kernel, energy, reach } = kernelOf(widthHz, stepHz);
+  const answer = (apartHz: number) => {
+    let sum = 0;
+    for (let k = -reach; k <= reach; k += 1) {
+      const u = (2 * (k * stepHz - apartHz)) / widthHz;
+      sum += (2 * kernel[k + reach]!) / (Math.PI * widthHz * (1 + u * u));
     }
+    return sum / energy;
+  };
+  const far = (kernelWidths + 4) * widthHz;
+  return lines.map((line) => {
+    let sum = 0;
+    for (const { offsetHz, share } of lines) {
+      const apart = Math.abs(offsetHz - line.offsetHz);
+      if (apart < far) sum += share * answer(apart);
+    }
+    return sum;
+  });
+}
+
+/** A Lorentzian without its mean, so that a level does not answer. */
+function kernelOf(widthHz: number, stepHz: number) {
+  const reach = Math.ceil((kernelWidths * widthHz) / stepHz);
+  const kernel = new Float64Array(2 * reach + 1);
+  let mean = 0;
+  for (let k = 0; k < kernel.length; k += 1) {
+    const u = (2 * (k - reach) * stepHz) / widthHz;
+    kernel[k] = 2 / (Math.PI * widthHz * (1 + u * u));
+    mean += kernel[k]! / kernel.length;
   }
-  const { filtered } = matched(pattern, 0, pattern.length, widthHz, stepHz);
-  return lines.map(({ offsetHz }) => filtered[Math.round((firstHz - offsetHz) / stepHz)]!);
+  let energy = 0;
+  for (let k = 0; k < kernel.length; k += 1) {
+    kernel[k] = kernel[k]! - mean;
+    energy += kernel[k]! ** 2;
+  }
+  return { kernel, energy, reach };
 }
 
 /** Least-squares area of one Lorentzian at every point, and the energy of the kernel. */
 function matched(data: Float64Array, from: number, to: number, widthHz: number, stepHz: number) {
-  const reach = Math.ceil((kernelWidths * widthHz) / stepHz);
-  const kernel = Float64Array.from({ length: 2 * reach + 1 }, (_, k) => {
-    const u = (2 * (k - reach) * stepHz) / widthHz;
-    return 2 / (Math.PI * widthHz * (1 + u * u));
-  });
-  const mean = kernel.reduce((sum, value) => sum + value, 0) / kernel.length;
-  for (let k = 0; k < kernel.length; k += 1) kernel[k] = kernel[k]! - mean;
-  const energy = kernel.reduce((sum, value) => sum + value * value, 0);
+  const { kernel, energy, reach } = kernelOf(widthHz, stepHz);
   const filtered = new Float64Array(to - from);
   for (let i = from; i < to; i += 1) {
     let sum = 0;

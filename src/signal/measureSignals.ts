@@ -3,6 +3,7 @@ import type { Spectrum } from '../spectrum/spectrum.js';
 import { addExtraLines } from './addExtraLines.js';
 import { areaOf } from './areaOf.js';
 import { backgroundPrefix, backgroundTargets } from './backgroundTargets.js';
+import { binSpectrum } from './binSpectrum.js';
 import { describeSignal, isSignificant } from './describeSignal.js';
 import { drawStrip } from './drawStrip.js';
 import { findUnassigned } from './findUnassigned.js';
@@ -17,6 +18,7 @@ import { measureRange } from './measureRange.js';
 import { measureSolvents } from './measureSolvents.js';
 import { misfitOf } from './misfitOf.js';
 import { signalTargets, type Target } from './signalTargets.js';
+import { unexplainedPeaks } from './unexplainedPeaks.js';
 import { whiteningFilter } from './whiteningFilter.js';
 
 /** Relative misfit of the line shape from which far tails are left out. */
@@ -26,16 +28,17 @@ const narrowMisfit = 0.01;
  * The table of contents of measuring: locate each declared pattern, learn the line shape, fit region by region, look at what
  * is left over, and say what was found.
  *
- * @param spectrum phased, flat, referenced
+ * @param fine     phased, flat, referenced
  * @param method   signals with their patterns
  * @returns signals in method order; areas in units of the spectrum x Hz
  * @source  see the steps
  */
-export function measureSignals(spectrum: Spectrum, method: Method): Measurement {
-  const declared = signalTargets(method, spectrum.observeMhz);
-  const targets = [...declared, ...backgroundTargets(method, spectrum.observeMhz)];
+export function measureSignals(fine: Spectrum, method: Method): Measurement {
+  const declared = signalTargets(method, fine.observeMhz);
+  const targets = [...declared, ...backgroundTargets(method, fine.observeMhz)];
+  const guessHz = guessWidth(fine, targets);
+  const spectrum = binSpectrum(fine, guessHz);
   const whitening = whiteningFilter(spectrum.noiseCorrelation);
-  const guessHz = guessWidth(spectrum, targets);
   const located = locateSignals(spectrum, targets, guessHz);
   const widthOf = (target: Target) => (target.signal.pattern.isBroad ? 8 : 1) * guessHz;
   const regions = groupRegions(spectrum, targets, located, widthOf);
@@ -46,13 +49,23 @@ export function measureSignals(spectrum: Spectrum, method: Method): Measurement 
   const explained = fitted.map((region) => (isBackground(region) ? region : addExtraLines(region, shape.misfit)));
 
   const byKey = new Map<string, MeasuredSignal>();
+  const residual = unexplainedPeaks(spectrum, explained, method, shape.widthHz);
   const seenSpecies = speciesSeen(explained);
   explained.forEach((extra, home) => {
     for (const target of extra.region.targets) {
       if (target.key.startsWith(backgroundPrefix)) continue;
       const strip = drawStrip(spectrum, extra, target);
       const described = describeSignal(
-        { spectrum, whitening, misfit: shape.misfit, plain: fitted, extra: explained, home, seenSpecies },
+        {
+          spectrum,
+          whitening,
+          misfit: shape.misfit,
+          plain: fitted,
+          extra: explained,
+          home,
+          seenSpecies,
+          unexplained: residual.peaks,
+        },
         target,
       );
       byKey.set(target.key, { ...described, ...(strip ? { strip } : {}) });
@@ -64,8 +77,8 @@ export function measureSignals(spectrum: Spectrum, method: Method): Measurement 
 
   return {
     signals,
-    unassigned: findUnassigned(spectrum, method, explained, { widthHz: shape.widthHz, whitening }),
-    solvents: measureSolvents(spectrum, method, explained),
+    unassigned: findUnassigned(spectrum, method, residual, { widthHz: shape.widthHz, whitening }),
+    solvents: measureSolvents(spectrum, method, fitted, shape.widthHz),
     signalToNoise: tallestLine(signals, explained, spectrum.noise),
     lineShape: { widthHz: shape.widthHz, lorentzShare: shape.lorentzShare, asymmetry: spectrum.quality.referenceAsymmetry ?? 0 },
     flags: flagSignals(signals),

@@ -1,4 +1,4 @@
-import type { Spectrum } from '../spectrum/spectrum.js';
+import type { BinnedSpectrum } from './binSpectrum.js';
 import { fitRegion } from './fitRegion.js';
 import type { FittedRegion } from './fitRegions.js';
 import type { Parameter, RegionFit } from './regionModel.js';
@@ -31,7 +31,7 @@ export interface Neighbourhood extends FittedRegion {
  * @source  own
  */
 export function neighbourhood(
-  spectrum: Spectrum,
+  spectrum: BinnedSpectrum,
   regions: readonly FittedRegion[],
   home: FittedRegion,
   target: Target,

@@ -23,7 +23,8 @@ export function normalEquations(
   const terms = model.terms.length;
   const linear = terms + 2;
   const half = Math.max(1, (points - 1) / 2);
-  const slopeColumn = Float64Array.from({ length: points }, (_, i) => (half - i) / half);
+  const slopeColumn = new Float64Array(points);
+  for (let i = 0; i < points; i += 1) slopeColumn[i] = (half - i) / half;
   const whiten = (column: Float64Array) => trusted(whitenColumn(column, filter, 1 / noise), window);
   const ones = trusted(filteredOnes(points, filter, 1 / noise), window);
   const basis = [...shapes.map(({ value }) => whiten(value)), ones, whiten(slopeColumn)];
@@ -42,7 +43,8 @@ export function normalEquations(
   const areas = solution.slice(0, terms);
   const level = solution[terms]!;
   const slope = solution[terms + 1]!;
-  const residual = Float64Array.from(data, (value, i) => value - level - slope * slopeColumn[i]!);
+  const residual = new Float64Array(points);
+  for (let i = 0; i < points; i += 1) residual[i] = data[i]! - level - slope * slopeColumn[i]!;
   shapes.forEach(({ value }, t) => {
     for (let i = 0; i < points; i += 1) residual[i] = residual[i]! - areas[t]! * value[i]!;
   });
@@ -76,9 +78,7 @@ export function normalEquations(
 /** d model / d parameter: the sum over the terms that carry it. */
 function derivative(model: RegionModel, shapes: readonly TermColumns[], areas: Float64Array, index: number, points: number) {
   const sum = new Float64Array(points);
-  const add = (column: Float64Array, area: number) => {
-    for (let i = 0; i < points; i += 1) sum[i] = sum[i]! + area * column[i]!;
-  };
+  const add = (column: Float64Array, area: number) => addScaled(sum, column, area);
   model.terms.forEach((term, t) => {
     const own = shapes[t]!;
     const area = areas[t]!;
@@ -93,9 +93,18 @@ function derivative(model: RegionModel, shapes: readonly TermColumns[], areas: F
   return sum;
 }
 
+function addScaled(target: Float64Array, source: Float64Array, factor: number): void {
+  for (let i = 0; i < target.length; i += 1) target[i] = target[i]! + factor * source[i]!;
+}
+
 /** The first taps of each window see a shortened past: those points are left out. */
 export function whitenColumn(column: Float64Array, filter: Float64Array, scale: number): Float64Array {
   const order = filter.length - 1;
+  if (order === 0) {
+    const only = new Float64Array(column.length);
+    for (let i = 0; i < only.length; i += 1) only[i] = column[i]! * filter[0]! * scale;
+    return only;
+  }
   const out = new Float64Array(Math.max(0, column.length - order));
   for (let i = 0; i < out.length; i += 1) {
     let sum = 0;

@@ -27,7 +27,10 @@ export function pickPeaks(data: Float64Array, firstHz: number, stepHz: number, w
   const sharp = kernel.map((value) => value - mean);
   const energy = sharp.reduce((sum, value) => sum + value * value, 0);
   const areas = new Float64Array(data.length);
+  // Where not even a third of the height stands no line of that area can be.
+  const least = (0.3 * areaMin * 2) / (Math.PI * widthHz);
   for (let i = reach; i < data.length - reach; i += 1) {
+    if (data[i]! < least) continue;
     let sum = 0;
     for (let k = -reach; k <= reach; k += 1) sum += data[i + k]! * sharp[k + reach]!;
     areas[i] = sum / energy;

@@ -1,4 +1,4 @@
-import type { Spectrum } from '../spectrum/spectrum.js';
+import type { BinnedSpectrum } from './binSpectrum.js';
 import { type CandidatePattern, candidatePatterns, lettersOf } from './candidatePatterns.js';
 import { fitRegion } from './fitRegion.js';
 import type { Unassigned } from './measured.js';
@@ -24,7 +24,7 @@ const nearlyAsGood = 1.3;
  * @source  see `candidatePatterns`, `fitRegion`
  */
 export function readMultiplet(
-  spectrum: Spectrum,
+  spectrum: BinnedSpectrum,
   trace: Float64Array,
   peaks: readonly Peak[],
   widthHz: number,
@@ -49,7 +49,7 @@ export function readMultiplet(
   for (let i = 0; i < n; i += 1) {
     area += fit.areas[i]!;
     moment += fit.areas[i]! * fit.values[fit.model.terms[i]!.shift]!;
-    for (let j = 0; j < n; j += 1) variance += fit.covariance[i * fit.size + j]!;
+    for (let j = 0; j < n; j += 1) variance += fit.covarianceOf()[i * fit.size + j]!;
   }
   const couplingsHz = named?.candidate.couplingsHz.map(
     (j, k) => Math.round((j + fit.values[fit.model.terms[0]!.couplings[k]!]!) * 10) / 10,

@@ -46,6 +46,9 @@ export interface RegionWindow {
   readonly stepHz: number;
   /** Seconds after which the decay was cut; absent: not known, or it died out. */
   readonly acquisitionS?: number;
+  /** See `BinnedSpectrum`. */
+  readonly blur: number;
+  readonly rippleFactor: number;
   /** shape (to - from): data less what other regions explain. */
   readonly data: Float64Array;
   readonly noise: number;
@@ -75,8 +78,8 @@ export interface RegionFit {
   readonly level: number;
   readonly slopePerHz: number;
   readonly values: Float64Array;
-  /** Covariance of (areas, level, slope x half width, parameters), row-major. */
-  readonly covariance: Float64Array;
+  /** Covariance of (areas, level, slope x half width, free parameters), row-major, with correlated noise; worked out when asked. */
+  readonly covarianceOf: () => Float64Array;
   readonly size: number;
   /** Sum of squares of the whitened residual, in units of the noise; without the priors. */
   readonly chiSquare: number;

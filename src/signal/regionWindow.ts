@@ -1,5 +1,6 @@
-import type { Spectrum } from '../spectrum/spectrum.js';
+import type { BinnedSpectrum } from './binSpectrum.js';
 import type { RegionWindow } from './regionModel.js';
+import { spectrumAxis } from './tailsOf.js';
 import type { Whitening } from './whiteningFilter.js';
 
 export interface WindowSettings {
@@ -24,7 +25,7 @@ export interface WindowSettings {
  * @source  own
  */
 export function regionWindow(
-  spectrum: Spectrum,
+  spectrum: BinnedSpectrum,
   { from, to, whitening, misfit, widthHz, outside }: WindowSettings,
 ): RegionWindow {
   const data = spectrum.real.slice(from, to);
@@ -33,9 +34,9 @@ export function regionWindow(
   return {
     from,
     to,
-    firstHz: spectrum.firstPpm * spectrum.observeMhz - from * spectrum.stepHz,
-    stepHz: spectrum.stepHz,
-    ...(spectrum.acquisitionS !== undefined ? { acquisitionS: spectrum.acquisitionS } : {}),
+    ...spectrumAxis(spectrum, from),
+    blur: spectrum.blur,
+    rippleFactor: spectrum.rippleFactor,
     data,
     noise: Math.max(spectrum.noise, Number.MIN_VALUE),
     filter: whitening.filter,

@@ -1,5 +1,6 @@
-import type { Spectrum } from '../spectrum/spectrum.js';
+import type { Method } from '../method/method.js';
 import { extraPrefix } from './addExtraLines.js';
+import type { BinnedSpectrum } from './binSpectrum.js';
 import type { FittedRegion } from './fitRegions.js';
 import { type Peak, pickPeaks } from './pickPeaks.js';
 import { type FittedLine, sticksOf, tailsOf } from './tailsOf.js';
@@ -9,6 +10,8 @@ export const scoreDefault = 5;
 /** Beside a line, what this part of its height explains may be a fault of its shape. */
 const shapeShare = 0.01;
 const shapeReachWidths = 12;
+/** Listed ranges are read off by eye. */
+const edgePpm = 0.02;
 
 /** What is left of a spectrum when all that was fitted is taken off. */
 export interface Residual {
@@ -22,19 +25,18 @@ export interface Residual {
 /**
  * Picks the lines that no fitted signal explains.
  *
- * @param widthHz   line width of the spectrum
- * @param scoreMin  in standard uncertainties of the area of one line
- * @param hiddenPpm ranges [low, high] where lines were never declared singly (`m`): nothing there is unexplained
+ * @param widthHz line width of the spectrum
  * @returns peaks by descending shift
  * @source  see `pickPeaks`
  */
 export function unexplainedPeaks(
-  spectrum: Spectrum,
+  spectrum: BinnedSpectrum,
   regions: readonly FittedRegion[],
+  method: Method,
   widthHz: number,
-  scoreMin: number,
-  hiddenPpm: readonly (readonly [number, number])[],
 ): Residual {
+  const scoreMin = method.quality.unassigned_over_noise ?? scoreDefault;
+  const hiddenPpm = hiddenRanges(method);
   const { real, noise, stepHz, firstPpm, observeMhz } = spectrum;
   const declared = regions.map(({ fit }) => ({ fit: withoutExtras(fit) }));
   const model = tailsOf(spectrum, 0, real.length, declared);
@@ -53,6 +55,16 @@ export function unexplainedPeaks(
     return peak.area > 3 * shadow;
   });
   return { trace, peaks, lines: tall };
+}
+
+/** Ranges [low, high] in ppm where lines were never declared singly (`m`): nothing there is unexplained. */
+export function hiddenRanges(method: Method): (readonly [number, number])[] {
+  return method.species
+    .flatMap((species) => species.signals)
+    .filter(({ pattern, rangePpm }) => pattern.isMultiplet || rangePpm !== undefined)
+    .map(({ rangePpm, shiftPpm, withinPpm }): readonly [number, number] =>
+      rangePpm ? [rangePpm[0] - edgePpm, rangePpm[1] + edgePpm] : [shiftPpm - withinPpm, shiftPpm + withinPpm],
+    );
 }
 
 function withoutExtras(fit: FittedRegion['fit']): FittedRegion['fit'] {

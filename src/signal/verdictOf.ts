@@ -113,7 +113,7 @@ function leftOverOf(spectrum: Spectrum, fitted: FittedRegion, target: Target, ar
     const extra = fit.areas[t]!;
     if (shiftHz > high || shiftHz < low) return;
     sum += extra;
-    variance += fit.covariance[t * fit.size + t]!;
+    variance += fit.covarianceOf()[t * fit.size + t]!;
     if (extra > (top?.area ?? 0)) top = { area: extra, shiftHz };
   });
   if (top === undefined) return undefined;

@@ -1,6 +1,8 @@
 /** A longer filter gains nothing: beyond this the correlation of any usual window has died out. */
-const orderMax = 24;
+const orderMax = 8;
 /** Share of white noise added before solving, so that bands that zero filling left empty are not amplified without bound. */
+/** Weaker correlation than this changes no uncertainty by a percent. */
+const notable = 0.02;
 const floorShare = 0.03;
 
 /** A causal filter that makes correlated noise nearly white, and what correlation remains. */
@@ -34,7 +36,7 @@ export function whiteningFilter(correlation: Float64Array): Whitening {
 
 function lastNotable(correlation: Float64Array): number {
   let last = 0;
-  for (let lag = 1; lag < correlation.length; lag += 1) if (Math.abs(correlation[lag]!) > 0.01) last = lag;
+  for (let lag = 1; lag < correlation.length; lag += 1) if (Math.abs(correlation[lag]!) > notable) last = lag;
   return last;
 }
 
