@@ -58,6 +58,9 @@ export interface Amounts {
   /** Purity by the 100 % method (normalisation), mole and mass basis. */
   readonly purityByNormalisation?: { readonly moleFraction: Quantity; readonly massFraction?: Quantity };
   readonly residualSolvents?: readonly ResidualSolvent[];
+  /** Sum over the followed chain (starting material, intermediates, products by stoichiometry) over that at time zero. */
   readonly massBalance?: Quantity;
+  /** Area of what no species explains, as a share of that of the fraction-bearing species (by protons). */
+  readonly unassignedShare?: Quantity;
   readonly flags: readonly Flag[];
 }

@@ -1,11 +1,17 @@
 import type { Quantity } from '../base/quantity.js';
 import type { Method, RunFile } from '../method/method.js';
-import type { Measurement } from '../signal/measured.js';
+import type { MeasuredSignal, Measurement } from '../signal/measured.js';
 import type { Amounts, SpeciesAmount } from './amounts.js';
 import { type CombinedSignals, combineSignals } from './combineSignals.js';
 import { conversionOf } from './conversionOf.js';
+import { massBalanceOf } from './massBalanceOf.js';
+import { normalisedPurity } from './normalisedPurity.js';
+import { purityOf } from './purityOf.js';
+import { residualSolvents } from './residualSolvents.js';
+import { saturationOf } from './saturationOf.js';
 import { shareOf } from './shareOf.js';
 import { standardScale } from './standardScale.js';
+import { unassignedShareOf } from './unassignedShareOf.js';
 
 /** Moles of the followed starting material at time zero, on the scale of `unit`; from the first points or the standard. */
 export interface StartAmounts {
@@ -50,13 +56,44 @@ export function deriveAmounts(measurement: Measurement, method: Method, runFile:
   }
   const conversion = conversionOf(method, relative);
   const yielded = yieldOf(method, species, scale.unit, start);
-  return { unit: scale.unit, species, ...(conversion ? { conversion } : {}), ...(yielded ? { yield: yielded } : {}), flags: [] };
+  const balance = massBalanceOf(method, species, scale.unit, start);
+  const purity = purityOf(method, runFile, relative);
+  const solvents = residualSolvents(measurement.solvents, method, relative, scale);
+  const normalised = normalisedPurity(method, relative);
+  const unassigned = unassignedShareOf(measurement, method);
+  return {
+    unit: scale.unit,
+    species,
+    ...(conversion ? { conversion } : {}),
+    ...(yielded ? { yield: yielded } : {}),
+    ...(purity.budget ? { purity: purity.budget } : {}),
+    ...(normalised ? { purityByNormalisation: normalised } : {}),
+    ...(solvents ? { residualSolvents: solvents } : {}),
+    ...(balance ? { massBalance: balance } : {}),
+    ...(unassigned ? { unassignedShare: unassigned } : {}),
+    flags: purity.flags,
+  };
+}
+
+/**
+ * Areas corrected for incomplete relaxation where the method gives relaxation delay, pulse angle and the signal's T1; without
+ * them full relaxation is assumed, and the report says so.
+ */
+function relaxed(signals: readonly MeasuredSignal[], method: Method): readonly MeasuredSignal[] {
+  const { relaxationDelayS, pulseAngleDeg } = method.acquisition;
+  if (relaxationDelayS === undefined || pulseAngleDeg === undefined) return signals;
+  return signals.map((signal) => {
+    const t1S = method.species.flatMap((species) => species.signals).find(({ key }) => key === signal.key)?.t1S;
+    if (t1S === undefined) return signal;
+    const share = saturationOf(relaxationDelayS, t1S, pulseAngleDeg);
+    return { ...signal, area: signal.area / share, u: signal.u / share, u0: signal.u0 / share };
+  });
 }
 
 function combineAll(measurement: Measurement, method: Method): Map<string, CombinedSignals> {
   const combined = new Map<string, CombinedSignals>();
   for (const species of method.species) {
-    const result = combineSignals(species, measurement.signals);
+    const result = combineSignals(species, relaxed(measurement.signals, method));
     if (result) combined.set(species.id, result);
   }
   return combined;

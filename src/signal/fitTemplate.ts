@@ -57,8 +57,10 @@ export function fitTemplate(
   if (!best) return undefined;
   // A hundredth of what is explained nearby may be the line shape's own error.
   const modelU = 0.01 * tallest * widthHz * (Math.PI / 2);
-  const isCrowded = modelU > 0.5 * best.u && modelU > 0.15 * Math.abs(best.area);
-  return { area: best.area, u: Math.hypot(best.u, modelU), shiftPpm: shiftPpm - best.move * stepPpm, isCrowded };
+  const satelliteU = satelliteArea(spectrum, regions, centre, widthHz);
+  const foreignU = Math.hypot(modelU, satelliteU);
+  const isCrowded = foreignU > 0.5 * best.u && foreignU > 0.15 * Math.abs(best.area);
+  return { area: best.area, u: Math.hypot(best.u, foreignU), shiftPpm: shiftPpm - best.move * stepPpm, isCrowded };
 
   function templateOf(length: number, place: number, pattern: readonly Line[], width: number, stepOfHz: number): Float64Array {
     const template = new Float64Array(length);
@@ -72,6 +74,24 @@ export function fitTemplate(
     }
     return template;
   }
+}
+
+/** What a 13C satellite of a strong line could put here: a proton on carbon has 0.54 % of its line half a J(C,H) away on either side. */
+function satelliteArea(spectrum: BinnedSpectrum, regions: readonly FittedRegion[], centre: number, widthHz: number): number {
+  let tallest = 0;
+  // J(C,H)/2: sp3 carbon 115 to 140 Hz, sp2 carbon 152 to 172 Hz (common practice).
+  const places = [58, 76].flatMap((low, k) => [-1, 1].map((side) => ({ side, low, high: [70, 86][k]! })));
+  for (const { side, low: lowHz, high: highHz } of places) {
+    const [one, other] = [
+      centre + Math.round((side * lowHz) / spectrum.stepHz),
+      centre + Math.round((side * highHz) / spectrum.stepHz),
+    ];
+    const [from, to] = [Math.min(one, other), Math.max(one, other)];
+    const [low, high] = [Math.max(0, from), Math.min(spectrum.real.length, to)];
+    if (high - low < 2) continue;
+    for (const value of tailsOf(spectrum, low, high, regions)) tallest = Math.max(tallest, value);
+  }
+  return 0.0054 * tallest * widthHz * (Math.PI / 2);
 }
 
 function amplitudeOf(rest: Float64Array, template: Float64Array, spectrum: BinnedSpectrum): { area: number; u: number } {

@@ -1,5 +1,5 @@
 import { solventLimits } from '../method/data/ichQ3c.js';
-import { impurityShifts } from '../method/data/impurityShifts.js';
+import { type ImpurityShift, impurityShifts } from '../method/data/impurityShifts.js';
 import type { Method } from '../method/method.js';
 import { firstOrderLines } from '../pattern/firstOrderLines.js';
 import { parsePattern } from '../pattern/parsePattern.js';
@@ -24,6 +24,8 @@ const ownSolvent: Readonly<Record<string, string>> = {
 /** Significance that a search over a few shifts and some fifty solvents asks for. */
 const foundFrom = 4.5;
 const sharedPpm = 0.012;
+/** One clear line alone must stand out by this. */
+const aloneFrom = 7;
 
 interface Candidate {
   readonly name: string;
@@ -66,7 +68,7 @@ function candidatesOf(method: Method): Candidate[] {
   const listed = new Set(method.species.map(({ name }) => name.toLowerCase()));
   return solventLimits.flatMap(([name, cas]) => {
     if (cas === own || listed.has(name.toLowerCase())) return [];
-    const rows = impurityShifts.filter((row) => row[1] === cas && row[5] === method.solvent && row[6] > 0);
+    const rows = oneOfEachGroup(impurityShifts.filter((row) => row[1] === cas && row[5] === method.solvent && row[6] > 0));
     const signals = rows.flatMap(([, , group, multiplicity, couplings, , nuclei, shiftPpm]) => {
       if (/^(OH|NH|SH|COOH)/.test(group) || multiplicity.includes('br')) return [];
       const lines = linesOf(multiplicity, couplings);
@@ -74,6 +76,13 @@ function candidatesOf(method: Method): Candidate[] {
     });
     return signals.length > 0 ? [{ name, cas, signals }] : [];
   });
+}
+
+/** Several sources list the same group; rows that lie close with as many protons are one signal, the first source's. */
+function oneOfEachGroup(rows: readonly ImpurityShift[]): ImpurityShift[] {
+  return rows.filter(
+    (row, index) => rows.findIndex((other) => other[6] === row[6] && Math.abs(other[7] - row[7]) < 0.04) === index,
+  );
 }
 
 /** Lines of a published multiplicity; undefined for `m` and what cannot be read. */
@@ -112,7 +121,7 @@ function judge(
   const misfit = usable.reduce((sum, { value, u }) => sum + ((value - mean) / Math.hypot(u, 0.1 * mean)) ** 2, 0);
   const spread = usable.length > 1 ? Math.max(1, Math.sqrt(misfit / (usable.length - 1))) : 1;
   const base = { name, cas, areaPerNucleus: mean, u: u0 * spread, u0 };
-  const isSeen = mean > foundFrom * u0;
+  const isSeen = mean > foundFrom * u0 && mean > 2.5 * base.u;
   // What is too small at one of its own places is not this solvent, whatever stands at the others.
   const lacking = usable.find(({ value, u }) => value + 3 * u < 0.6 * mean);
   const clear = usable.filter(({ value, u, isCrowded }) => !isCrowded && value > 3 * u);
@@ -128,8 +137,12 @@ function judge(
     };
   }
   const rivals = sharing(candidate, all);
-  if (clear.length === 0 || (usable.length === 1 && rivals.length > 0)) {
-    const why = rivals.length > 0 ? `its only line is shared with ${rivals.join(', ')}` : 'only a crowded line suggests it';
+  const alone = clear.length === 1 ? clear[0]!.value / clear[0]!.u : 0;
+  if (clear.length < 2 && (rivals.length > 0 || alone < aloneFrom)) {
+    const why =
+      rivals.length > 0
+        ? `the line that shows it is shared with ${rivals.join(', ')}`
+        : 'only a crowded or weak line suggests it';
     return { ...base, evidence: 'suggested', words: why };
   }
   return {

@@ -24,7 +24,7 @@ const startedMs = Date.UTC(2026, 2, 14, 18, 0, 0);
 
 /**
  * Simulates the sample night: second-order acetylation with an excess of anhydride, an olefin that grows in, a trace of
- * toluene, drifting shifts, random phases, delayed onset, a rolling baseline and noise. Everything from one seed.
+ * tert-butyl methyl ether, drifting shifts, random phases, delayed onset, a rolling baseline and noise. Everything from one seed.
  *
  * @param method the sample method: its species ids are those of the scenario
  * @param count  number of time points, one every 30 minutes
@@ -90,14 +90,15 @@ function amountsAt(conversion: number, impurityShare: number): Record<string, nu
 
 type LineOptions = Parameters<typeof speciesLines>[2];
 
-/** Reference, residual solvent, water and a trace of toluene. */
+/** Reference, residual solvent, water and a trace of tert-butyl methyl ether. */
 function backgroundLines(settings: LineOptions): FidLine[] {
   const { widthHz, driftPpm = 0 } = settings;
   return [
     { shiftPpm: 0, area: 0.6, widthHz },
     { shiftPpm: 7.26, area: 0.35, widthHz },
     { shiftPpm: 1.56, area: 0.12, widthHz: widthHz + 2 },
-    { shiftPpm: 2.36, area: 0.012, widthHz },
+    { shiftPpm: 1.19, area: 0.036, widthHz },
+    { shiftPpm: 3.22, area: 0.012, widthHz },
   ].flatMap((line) => withSatellites({ ...line, shiftPpm: line.shiftPpm + driftPpm }, { observeMhz }));
 }
 
