@@ -276,7 +276,12 @@ describe('files that change their name, content or existence', () => {
     let measured = 0;
     const world = makeWorld({ ...files, 'BX-0417/copy.jdx': files['BX-0417/tp-001.jdx']! });
     const { measureCheaply } = await import('./world.js');
-    await pass(world, { measure: (task) => ((measured += 1), measureCheaply(task)) });
+    await pass(world, {
+      measure: (task) => {
+        measured += 1;
+        return measureCheaply(task);
+      },
+    });
     expect(measured).toBe(3);
     expect(series(world).points.map(({ file }) => file)).toEqual(['tp-000.jdx', 'copy.jdx', 'tp-002.jdx']);
     expect(series(world).inputs).toMatchObject([{ file: 'tp-001.jdx', status: 'duplicate' }]);
@@ -397,7 +402,12 @@ describe('a share that goes away', () => {
     }
     let measured = 0;
     const { measureCheaply } = await import('./world.js');
-    await pass(world, { measure: (task) => ((measured += 1), measureCheaply(task)) });
+    await pass(world, {
+      measure: (task) => {
+        measured += 1;
+        return measureCheaply(task);
+      },
+    });
     expect(measured).toBe(0);
     expect(ledgerOf(world)).toEqual(ledger);
     const port = makeFaultyPort(world.disk.port, () => undefined);
