@@ -1,6 +1,7 @@
 import type { Line } from '../pattern/pattern.js';
 import type { BinnedSpectrum } from './binSpectrum.js';
 import type { FittedRegion } from './fitRegions.js';
+import { lorentzTemplate } from './lorentzTemplate.js';
 import { tailsOf } from './tailsOf.js';
 
 /** The area of a known pattern at a known place. */
@@ -31,7 +32,7 @@ export function fitTemplate(
   lines: readonly Line[],
   widthHz: number,
 ): TemplateFit | undefined {
-  const { firstPpm, stepPpm, stepHz, observeMhz, real } = spectrum;
+  const { firstPpm, stepPpm, stepHz, real } = spectrum;
   const halfPoints = Math.ceil(
     (Math.max(...lines.map(({ offsetHz }) => Math.abs(offsetHz))) + reachWidths * widthHz) / stepHz + searchPpm / stepPpm,
   );
@@ -49,7 +50,7 @@ export function fitTemplate(
   const step = Math.max(1, Math.round(widthHz / 4 / stepHz));
   const reach = Math.round(searchPpm / stepPpm);
   for (let move = -reach; move <= reach; move += step) {
-    const template = templateOf(rest.length, (firstPpm - shiftPpm) / stepPpm - from + move, lines, widthHz, stepHz);
+    const template = lorentzTemplate(rest.length, (firstPpm - shiftPpm) / stepPpm - from + move, lines, widthHz, stepHz);
     const fit = amplitudeOf(rest, template, spectrum);
     const score = fit.area / fit.u - 0.5 * (move / Math.max(1, reach)) ** 2;
     if (!best || score > best.score) best = { ...fit, move, score };
@@ -61,19 +62,6 @@ export function fitTemplate(
   const foreignU = Math.hypot(modelU, satelliteU);
   const isCrowded = foreignU > 0.5 * best.u && foreignU > 0.15 * Math.abs(best.area);
   return { area: best.area, u: Math.hypot(best.u, foreignU), shiftPpm: shiftPpm - best.move * stepPpm, isCrowded };
-
-  function templateOf(length: number, place: number, pattern: readonly Line[], width: number, stepOfHz: number): Float64Array {
-    const template = new Float64Array(length);
-    const half = width / 2;
-    for (const { offsetHz, share } of pattern) {
-      const middle = place - offsetHz / observeMhz / stepPpm;
-      for (let i = 0; i < length; i += 1) {
-        const distance = (i - middle) * stepOfHz;
-        template[i] = template[i]! + (share * half) / Math.PI / (half * half + distance * distance);
-      }
-    }
-    return template;
-  }
 }
 
 /** What a 13C satellite of a strong line could put here: a proton on carbon has 0.54 % of its line half a J(C,H) away on either side. */

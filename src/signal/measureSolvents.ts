@@ -7,6 +7,7 @@ import type { Line } from '../pattern/pattern.js';
 import type { BinnedSpectrum } from './binSpectrum.js';
 import type { FittedRegion } from './fitRegions.js';
 import { fitTemplate, type TemplateFit } from './fitTemplate.js';
+import { lorentzTemplate } from './lorentzTemplate.js';
 import type { SolventFinding } from './measured.js';
 
 /** The protonated form of the tube's own solvent is never contamination: its CAS number by deuterated solvent. */
@@ -26,6 +27,8 @@ const foundFrom = 4.5;
 const sharedPpm = 0.012;
 /** One clear line alone must stand out by this. */
 const aloneFrom = 7;
+
+type Source = BinnedSpectrum;
 
 interface Candidate {
   readonly name: string;
@@ -51,7 +54,41 @@ export function measureSolvents(
   widthHz: number,
 ): readonly SolventFinding[] {
   if (!method.residualSolvents || method.solvent === undefined || method.nucleus !== '1H') return [];
-  const candidates = candidatesOf(method);
+  let open = candidatesOf(method);
+  let rest: typeof spectrum = { ...spectrum, real: spectrum.real.slice() };
+  const found: SolventFinding[] = [];
+  // The surest first: what it explains, the others cannot claim.
+  for (let turn = 0; turn < foundMax; turn += 1) {
+    const judged = judgeAll(rest, open, regions, widthHz);
+    const best = judged
+      .filter(({ finding }) => finding.evidence === 'found')
+      .sort((a, b) => significance(b) - significance(a))[0];
+    if (!best) return [...found, ...judged.map(({ finding }) => finding)].sort((a, b) => (a.name < b.name ? -1 : 1));
+    found.push(best.finding);
+    open = open.filter(({ cas }) => cas !== best.finding.cas);
+    rest = without(rest, best, widthHz);
+  }
+  return [...found, ...judgeAll(rest, open, regions, widthHz).map(({ finding }) => finding)].sort((a, b) =>
+    a.name < b.name ? -1 : 1,
+  );
+}
+
+const foundMax = 8;
+
+interface Judged {
+  readonly candidate: Candidate;
+  readonly fits: Fitted;
+  readonly finding: SolventFinding;
+}
+
+const significance = ({ finding }: Judged) => finding.areaPerNucleus / finding.u;
+
+function judgeAll(
+  spectrum: Source,
+  candidates: readonly Candidate[],
+  regions: readonly FittedRegion[],
+  widthHz: number,
+): Judged[] {
   const fitted = candidates.map((candidate) => ({
     candidate,
     fits: candidate.signals.map((signal) => ({
@@ -59,8 +96,23 @@ export function measureSolvents(
       fit: fitTemplate(spectrum, regions, signal.shiftPpm, signal.lines, widthHz),
     })),
   }));
-  const judged = fitted.map(({ candidate, fits }) => judge(candidate, fits, fitted));
-  return judged.sort((a, b) => (a.name < b.name ? -1 : 1));
+  return fitted.map(({ candidate, fits }) => ({ candidate, fits, finding: judge(candidate, fits, fitted) }));
+}
+
+/** The spectrum less the signals of a found solvent. */
+function without(spectrum: Source, { fits, finding }: Judged, widthHz: number): Source {
+  const { firstPpm, stepPpm, stepHz } = spectrum;
+  const real = spectrum.real.slice();
+  for (const { signal, fit } of fits) {
+    if (!fit) continue;
+    const area = finding.areaPerNucleus * signal.nuclei;
+    const place = (firstPpm - fit.shiftPpm) / stepPpm;
+    const reach = Math.ceil((60 * widthHz + Math.max(...signal.lines.map(({ offsetHz }) => Math.abs(offsetHz)))) / stepHz);
+    const [from, to] = [Math.max(0, Math.round(place) - reach), Math.min(real.length, Math.round(place) + reach + 1)];
+    const template = lorentzTemplate(to - from, place - from, signal.lines, widthHz, stepHz);
+    for (let i = from; i < to; i += 1) real[i] = real[i]! - area * template[i - from]!;
+  }
+  return { ...spectrum, real };
 }
 
 function candidatesOf(method: Method): Candidate[] {
