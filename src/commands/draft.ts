@@ -107,8 +107,12 @@ async function gather(args: ArgumentsCamelCase<DraftArguments>): Promise<Result<
     const { draftFromSpectrum } = await import('./draftFromSpectrum.js');
     const picked = await draftFromSpectrum(args.spectrum, args.nucleus, solvent);
     if (!picked.ok) return picked;
-    listed.push(picked.value);
-    madeFrom.push(`the multiplets of ${basename(args.spectrum)}, counts of nuclei from area ratios`);
+    listed.push(picked.value.source);
+    madeFrom.push(`the multiplets of ${basename(args.spectrum)}; guess: all belong to one compound, counts of nuclei by area`);
+    for (const doubt of picked.value.doubts) {
+      madeFrom.push(`that file with a doubt: ${doubt}`);
+      process.stderr.write(`look: ${escapeForTerminal(doubt)}\n`);
+    }
   }
   return ok({ sources: joinSources(structures, listed), madeFrom, ...(solvent !== undefined ? { solvent } : {}) });
 }

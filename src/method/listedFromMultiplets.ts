@@ -10,10 +10,20 @@ export interface FoundMultiplet {
   readonly couplingsHz?: readonly number[];
 }
 
-/** Areas below this share of the largest are traces of something else. */
-const traceShare = 0.05;
-/** The largest count tried for the smallest signal. */
-const smallestCountMax = 6;
+/** Areas below this share of the largest are 13C satellites and traces: a tert-butyl group still leaves a single proton. */
+const traceShare = 0.04;
+/** Signals below this part of one nucleus are traces of something else. */
+const traceNuclei = 0.5;
+/** The largest count tried for any one signal when looking for the area of one nucleus. */
+const countMax = 9;
+/** Areas of a summed multiplet are good to this many nuclei: slow relaxation alone costs several per cent. */
+const spread = (nuclei: number) => 0.06 * nuclei + 0.03;
+/** In squared spreads: what a trace costs, and what a count costs per unit of its logarithm. */
+const traceCost = 2;
+const countCost = 2.2;
+/** Two signals that share a coupling show how many nuclei the other has; a count that does not agree costs this. */
+const partnerCost = 6;
+const sameCouplingHz = 0.3;
 const nucleiMax = 60;
 
 /**
@@ -25,9 +35,13 @@ const nucleiMax = 60;
  */
 export function listedFromMultiplets(found: readonly FoundMultiplet[]): Listed[] {
   const largest = Math.max(0, ...found.map(({ area }) => area));
-  const strong = found.filter(({ area }) => area > traceShare * largest);
-  if (strong.length === 0) return [];
-  const unit = unitArea(strong.map(({ area }) => area));
+  const main = found.filter(({ area }) => area > traceShare * largest);
+  if (main.length === 0) return [];
+  const unit = unitArea(
+    main.map(({ area }) => area),
+    partnerCounts(main),
+  );
+  const strong = main.filter(({ area }) => area >= traceNuclei * unit);
   return strong
     .map(({ shiftPpm, area, pattern, couplingsHz }): Listed => {
       const couplings = (couplingsHz ?? []).map((coupling) => Math.round(coupling * 10) / 10);
@@ -40,20 +54,43 @@ export function listedFromMultiplets(found: readonly FoundMultiplet[]): Listed[]
     .sort((a, b) => b.shiftPpm - a.shiftPpm);
 }
 
-/** Area of one nucleus: the smallest signal is 1, 2, 3 ... nuclei, whichever makes the others most nearly whole. */
-function unitArea(areas: readonly number[]): number {
-  const smallest = Math.min(...areas);
-  let best = smallest;
-  let bestMiss = Number.POSITIVE_INFINITY;
-  for (let count = 1; count <= smallestCountMax; count++) {
-    const unit = smallest / count;
-    // Relative to the count itself: a large count is always nearly whole, and so proves little.
-    const miss =
-      areas.reduce((sum, area) => sum + Math.abs(area / unit - Math.round(area / unit)), 0) / areas.length + 0.03 * count;
-    if (miss < bestMiss - 1e-12) {
-      best = unit;
-      bestMiss = miss;
-    }
+/**
+ * Area of one nucleus: every signal in turn is 1, 2, 3 ... nuclei; the choice that makes the others most nearly whole, with few
+ * traces and small counts, is taken. A large count is always nearly whole, and so proves little.
+ */
+function unitArea(areas: readonly number[], wanted: ReadonlyMap<number, number>): number {
+  const units = areas.flatMap((area) => Array.from({ length: countMax }, (_, index) => area / (index + 1)));
+  const pairs = units.flatMap((one) =>
+    units.filter((other) => other > one && other < 1.2 * one).map((other) => (one + other) / 2),
+  );
+  let best = { unit: Math.max(...areas), cost: Number.POSITIVE_INFINITY };
+  for (const unit of [...units, ...pairs]) {
+    const cost = areas.reduce((sum, area, index) => {
+      const count = area / unit;
+      if (count < traceNuclei) return sum + traceCost;
+      const nuclei = Math.max(1, Math.round(count));
+      const isAgainst = nuclei % (wanted.get(index) ?? 1) !== 0;
+      return sum + ((count - nuclei) / spread(nuclei)) ** 2 + countCost * Math.log(nuclei) + (isAgainst ? partnerCost : 0);
+    }, 0);
+    if (cost < best.cost - 1e-12) best = { unit, cost };
   }
-  return best;
+  return best.unit;
+}
+
+/** A quartet and a triplet of one coupling belong to two and three nuclei: index -> count, where the partner is certain. */
+function partnerCounts(found: readonly FoundMultiplet[]): Map<number, number> {
+  const single = found.flatMap(({ pattern, couplingsHz }, index) => {
+    const parsed = parsePattern(pattern, couplingsHz ?? []);
+    const splittings = parsed.ok ? parsed.value.splittings : [];
+    const [only] = splittings;
+    return splittings.length === 1 && only?.couplingHz !== undefined
+      ? [{ index, neighbours: only.neighbours, couplingHz: only.couplingHz }]
+      : [];
+  });
+  return new Map(
+    single.flatMap((one) => {
+      const partners = single.filter((other) => other !== one && Math.abs(other.couplingHz - one.couplingHz) <= sameCouplingHz);
+      return partners.length === 1 ? [[one.index, partners[0]!.neighbours] as const] : [];
+    }),
+  );
 }

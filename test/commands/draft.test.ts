@@ -1,6 +1,7 @@
 import { mkdtemp, readFile, rm, writeFile } from 'node:fs/promises';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
+import { fileURLToPath } from 'node:url';
 import { afterEach, beforeEach, describe, expect, it, vi } from 'vitest';
 import yargs from 'yargs';
 import { draftCommand } from '../../src/commands/draft.js';
@@ -66,6 +67,15 @@ describe('draft', () => {
     expect(method.value.species[0]!.signals.map(({ id }) => id)).toEqual(['OCH2', 'COCH3', 'CH3']);
     expect(await run('--listed', listed, '--out', file)).toBe(2);
     expect(err).toContain('a draft replaces nothing');
+  });
+
+  it('proposes a method from a spectrum and names its signals after the structure', async () => {
+    const spectrum = fileURLToPath(new URL('../data/compounds/ethyl-vinyl-ether/spectrum.jdx', import.meta.url));
+    expect(await run('--spectrum', spectrum, '--smiles', 'CCOC=C', '--solvent', 'CDCl3')).toBe(0);
+    const method = readMethod(out, 'draft');
+    if (!method.ok) throw new Error('not a method');
+    expect(method.value.species[0]!.signals.map(({ id }) => id)).toEqual(['CH', 'CH2-a', 'CH2-b', 'OCH2', 'CH3']);
+    expect(out).toContain('guess: all belong to one compound');
   });
 
   it('tells where a listing contradicts its structure', async () => {

@@ -142,6 +142,18 @@ describe('listedFromMultiplets', () => {
     expect(listedFromMultiplets(found).map(({ nuclei }) => nuclei)).toEqual([1, 1]);
   });
 
+  it('is not led astray by a trace and by slow relaxation, because a quartet and a triplet count each other', () => {
+    const found = [
+      { shiftPpm: 6.9, area: 470, pattern: 'dq', couplingsHz: [15.5, 6.9] },
+      { shiftPpm: 5.8, area: 425, pattern: 'dq', couplingsHz: [15.5, 1.7] },
+      { shiftPpm: 4.1, area: 1190, pattern: 'q', couplingsHz: [7.1] },
+      { shiftPpm: 3.4, area: 96, pattern: 's' },
+      { shiftPpm: 1.8, area: 1630, pattern: 'dd', couplingsHz: [6.9, 1.7] },
+      { shiftPpm: 1.2, area: 1800, pattern: 't', couplingsHz: [7.1] },
+    ];
+    expect(listedFromMultiplets(found).map(({ nuclei }) => nuclei)).toEqual([1, 1, 2, 3, 3]);
+  });
+
   it('takes a pattern that cannot be read for a multiplet', () => {
     expect(listedFromMultiplets([{ shiftPpm: 7.2, area: 1, pattern: 'dd', couplingsHz: [8] }])[0]!.pattern.text).toBe('m');
     expect(listedFromMultiplets([])).toEqual([]);
