@@ -349,10 +349,11 @@ describe('amendments, methods and programs', () => {
     const cheap = makeMeasurer(measureCheaply);
     const deadly = {
       ...cheap,
-      measure: async (task: Parameters<typeof cheap.measure>[0]) =>
-        task.fileName === 'tp-001.jdx'
-          ? ((deaths += 1), { kind: 'died' as const, message: 'out of memory' })
-          : cheap.measure(task),
+      measure: async (task: Parameters<typeof cheap.measure>[0]) => {
+        if (task.fileName !== 'tp-001.jdx') return cheap.measure(task);
+        deaths += 1;
+        return { kind: 'died' as const, message: 'out of memory' };
+      },
     };
     const { watchOnce } = await import('../../src/watch/watchOnce.js');
     await watchOnce({ ...opened.value.session, measurer: deadly });
