@@ -10,7 +10,7 @@ export const backgroundPrefix = '(background) ';
 
 const singlet: Pattern = { text: 's', splittings: [], isBroad: false, isMultiplet: false };
 const broadSinglet: Pattern = { ...singlet, text: 'br s', isBroad: true };
-const withinPpm = 0.03;
+const withinPpm = 0.05;
 /** Water moves with temperature, acid and concentration (common practice). */
 const waterWithinPpm = 0.12;
 const takenPpm = 0.025;

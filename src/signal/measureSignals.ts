@@ -49,7 +49,7 @@ export function measureSignals(fine: Spectrum, method: Method): Measurement {
   const explained = fitted.map((region) => (isBackground(region) ? region : addExtraLines(region, shape.misfit)));
 
   const byKey = new Map<string, MeasuredSignal>();
-  const residual = unexplainedPeaks(spectrum, explained, method, shape.widthHz);
+  const residual = unexplainedPeaks(spectrum, explained, method, shape);
   const seenSpecies = speciesSeen(explained);
   explained.forEach((extra, home) => {
     for (const target of extra.region.targets) {

@@ -142,29 +142,30 @@ function gramOf(columns: readonly Float64Array[]): Float64Array {
 /** J^T R J for noise of autocorrelation R, plus what the priors contribute as if each were one more measurement. */
 function meatOf(columns: readonly Float64Array[], correlation: Float64Array, prior: Float64Array): Float64Array {
   const n = columns.length;
-  const meat = gramOf(columns);
-  for (let lag = 1; lag < correlation.length; lag += 1) {
-    const weight = correlation[lag]!;
-    if (weight === 0) continue;
-    for (let i = 0; i < n; i += 1) {
-      for (let j = 0; j < n; j += 1) {
-        const value = weight * (shiftedDot(columns[i]!, columns[j]!, lag) + shiftedDot(columns[j]!, columns[i]!, lag));
-        meat[i * n + j] = meat[i * n + j]! + value;
-      }
-    }
+  const meat = new Float64Array(n * n);
+  for (let j = 0; j < n; j += 1) {
+    const spread = correlated(columns[j]!, correlation);
+    for (let i = 0; i < n; i += 1) meat[i * n + j] = dot(columns[i]!, spread);
   }
   for (let k = 0; k < n; k += 1) meat[k * n + k] = meat[k * n + k]! + prior[k]!;
   return meat;
 }
 
+/** R x for a stationary autocorrelation. */
+function correlated(column: Float64Array, correlation: Float64Array): Float64Array {
+  const out = Float64Array.from(column);
+  for (let lag = 1; lag < correlation.length; lag += 1) {
+    const weight = correlation[lag]!;
+    for (let i = lag; i < column.length; i += 1) {
+      out[i] = out[i]! + weight * column[i - lag]!;
+      out[i - lag] = out[i - lag]! + weight * column[i]!;
+    }
+  }
+  return out;
+}
+
 function dot(a: Float64Array, b: Float64Array): number {
   let sum = 0;
   for (let i = 0; i < a.length; i += 1) sum += a[i]! * b[i]!;
-  return sum;
-}
-
-function shiftedDot(a: Float64Array, b: Float64Array, lag: number): number {
-  let sum = 0;
-  for (let i = lag; i < a.length; i += 1) sum += a[i - lag]! * b[i]!;
   return sum;
 }

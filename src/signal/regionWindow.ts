@@ -31,6 +31,9 @@ export function regionWindow(
   const data = spectrum.real.slice(from, to);
   if (outside !== undefined) for (let i = 0; i < data.length; i += 1) data[i] = data[i]! - outside[i]!;
   const tallest = misfit > 0 ? data.reduce((most, value) => Math.max(most, value), 0) : 0;
+  // Whitening sharpens what the model does not know: it helps only where noise is what limits.
+  const isShapeLimited = misfit * tallest > 3 * spectrum.noise;
+  const whitened = { filter: whitening.filter, filteredCorrelation: whitening.remaining };
   return {
     from,
     to,
@@ -39,13 +42,14 @@ export function regionWindow(
     rippleFactor: spectrum.rippleFactor,
     data,
     noise: Math.max(spectrum.noise, Number.MIN_VALUE),
-    filter: whitening.filter,
-    filteredCorrelation: whitening.remaining,
+    ...(isShapeLimited ? { filter: one, filteredCorrelation: whitening.original } : whitened),
     ...(misfit > 0 ? { trust: trustOf(data, spectrum.noise, misfit, widthHz / spectrum.stepHz) } : {}),
     // Beside a tall line the baseline is no better known than the line's own tails.
     baselineU: Math.max(Math.hypot(spectrum.baselineU, 0.5 * misfit * tallest), 0.01 * spectrum.noise, Number.MIN_VALUE),
   };
 }
+
+const one = Float64Array.of(1);
 
 /** How far, in line widths, and how strongly the shape error of a tall line counts beside it. */
 const skirtWidths = 8;

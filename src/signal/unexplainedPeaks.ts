@@ -7,9 +7,11 @@ import { type FittedLine, sticksOf, tailsOf } from './tailsOf.js';
 
 /** Areas over their noise from which a line is reported; `quality.unassigned_over_noise` of a method overrides it. */
 export const scoreDefault = 5;
-/** Beside a line, what this part of its height explains may be a fault of its shape. */
-const shapeShare = 0.01;
-const shapeReachWidths = 12;
+/** Beside a line, this share of it may be a fault of its shape, more where the shape is known to misfit. */
+const shapeShare = 0.0015;
+const shapeMisfits = 3;
+const shapeReachWidths = 40;
+const shapeSkirtWidths = 4;
 /** Listed ranges are read off by eye. */
 const edgePpm = 0.02;
 
@@ -26,6 +28,7 @@ export interface Residual {
  * Picks the lines that no fitted signal explains.
  *
  * @param widthHz line width of the spectrum
+ * @param misfit  relative misfit of the shared line shape
  * @returns peaks by descending shift
  * @source  see `pickPeaks`
  */
@@ -33,7 +36,7 @@ export function unexplainedPeaks(
   spectrum: BinnedSpectrum,
   regions: readonly FittedRegion[],
   method: Method,
-  widthHz: number,
+  { widthHz, misfit }: { readonly widthHz: number; readonly misfit: number },
 ): Residual {
   const scoreMin = method.quality.unassigned_over_noise ?? scoreDefault;
   const hiddenPpm = hiddenRanges(method);
@@ -45,14 +48,16 @@ export function unexplainedPeaks(
   const areaU = 1.5 * noise * Math.sqrt(Math.PI * widthHz * stepHz);
   const found = pickPeaks(trace, firstPpm * observeMhz, stepHz, widthHz, scoreMin * areaU);
   const tall = lines.filter((line) => line.area > 0).sort((a, b) => b.area - a.area || b.shiftHz - a.shiftHz);
+  const share = shapeShare + shapeMisfits * misfit;
   const peaks = found.filter((peak) => {
     const ppm = peak.shiftHz / observeMhz;
     if (hiddenPpm.some(([low, high]) => ppm >= low && ppm <= high)) return false;
     const shadow = tall.reduce((sum, line) => {
       const off = Math.abs(line.shiftHz - peak.shiftHz) / line.widthHz;
-      return off < shapeReachWidths ? sum + (shapeShare * line.area * (widthHz / line.widthHz)) / (1 + off * off) : sum;
+      if (off > shapeReachWidths) return sum;
+      return sum + (share * line.area * (widthHz / line.widthHz)) / (1 + (off / shapeSkirtWidths) ** 2);
     }, 0);
-    return peak.area > 3 * shadow;
+    return peak.area > shadow;
   });
   return { trace, peaks, lines: tall };
 }

@@ -18,10 +18,12 @@ const crowdedWidths = 1.5;
 /** Neighbours below this share of the signal do not crowd it. */
 const crowdedShare = 0.02;
 /** Relative rms misfit above which the lines are not the declared pattern's. */
-const misfitMax = 0.12;
+const misfitMax = 0.2;
 /** Below this a better pattern is a detail: a doublet of doublets with nearly equal couplings listed as a triplet. */
 const detailMisfit = 0.05;
 const oddsMin = 1000;
+/** Couplings below this many line widths only widen the lines. */
+const hiddenCoupling = 1.2;
 /** Share left over above which the signal is no longer by itself. */
 const crowdedLeftOver = 0.25;
 
@@ -74,8 +76,19 @@ export function verdictOf(spectrum: Spectrum, evidence: Evidence): Judged {
  */
 function isProven({ near, target, isPresent, isExpected }: Evidence, rival: Rival): boolean {
   if (near === undefined || rival.oddsAgainstDeclared < oddsMin) return false;
+  if (isRefinement(near, rival)) return false;
   if (misfitOf(near, target) < detailMisfit && near.strangeShare < detailMisfit) return false;
   return isPresent ? rival.oddsAgainstExtras > oddsMin : isExpected;
+}
+
+/** The declared pattern with one more coupling that the line width hides: a long-range coupling, or the shape of the line. */
+function isRefinement({ target, widthHz }: Neighbourhood, rival: Rival): boolean {
+  const declared = target.signal.pattern.splittings.map(({ neighbours }) => neighbours);
+  if (rival.neighbours.length !== declared.length + 1) return false;
+  return rival.couplingsHz.some((hertz, k) => {
+    const rest = rival.neighbours.filter((_, other) => other !== k);
+    return hertz < hiddenCoupling * widthHz && rest.every((n, other) => n === declared[other]);
+  });
 }
 
 function differing(declared: string, rival: Rival): Judged {

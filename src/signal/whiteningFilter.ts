@@ -11,6 +11,8 @@ export interface Whitening {
   readonly filter: Float64Array;
   /** Autocorrelation of the filtered noise, entry 0 is 1. */
   readonly remaining: Float64Array;
+  /** Autocorrelation before the filter, as far as it is notable. */
+  readonly original: Float64Array;
 }
 
 /**
@@ -18,11 +20,12 @@ export interface Whitening {
  *
  * Zero filling and windows correlate neighbouring points; a least-squares fit of whitened points is the efficient one.
  *
- * @param correlation shape (m), lags 0, 1, 2 ...; entry 0 is 1
+ * @param given shape (m), lags 0, 1, 2 ...; entry 0 is 1
  * @returns filter of at most 25 taps and the correlation left after it
  * @source  J. Durbin, Rev. Int. Stat. Inst. 1960, 28, 233 (from memory)
  */
-export function whiteningFilter(correlation: Float64Array): Whitening {
+export function whiteningFilter(given: Float64Array): Whitening {
+  const correlation = tapered(given);
   const order = Math.min(orderMax, lastNotable(correlation));
   const taps = durbin(correlation, order);
   const span = correlation.length - 1 + order;
@@ -31,7 +34,18 @@ export function whiteningFilter(correlation: Float64Array): Whitening {
   const scale = 1 / Math.sqrt(Math.max(raw[0]!, 1e-12));
   const remaining = raw.map((value) => value * scale * scale);
   const end = lastNotable(remaining);
-  return { filter: taps.map((value) => value * scale), remaining: remaining.slice(0, end + 1) };
+  return {
+    filter: taps.map((value) => value * scale),
+    remaining: remaining.slice(0, end + 1),
+    original: correlation.slice(0, lastNotable(correlation) + 1),
+  };
+}
+
+/** Brings a correlation that ends before it died out down to zero. */
+function tapered(correlation: Float64Array): Float64Array {
+  const last = correlation.length - 1;
+  if (last < 1 || Math.abs(correlation[last]!) < 0.03) return correlation;
+  return correlation.map((value, lag) => value * (1 - lag / (last + 1)));
 }
 
 function lastNotable(correlation: Float64Array): number {
@@ -48,6 +62,8 @@ function durbin(correlation: Float64Array, order: number): Float64Array {
     let sum = 0;
     for (let k = 0; k < m; k += 1) sum += taps[k]! * at(m - k);
     const reflection = -sum / variance;
+    // A correlation that was cut off too early is no longer one of any noise: stop where that shows.
+    if (Math.abs(reflection) >= 1) break;
     const next = [...taps, 0];
     for (let k = 1; k <= m; k += 1) next[k] = (taps[k] ?? 0) + reflection * taps[m - k]!;
     taps = next;

@@ -50,7 +50,7 @@ export function makeTestSpectrum(lines: readonly FidLine[], settings: TestSpectr
     realOut[i] = 2 * output[2 * bin]!;
     imagOut[i] = 2 * output[2 * bin + 1]!;
   }
-  const correlation = Float64Array.from({ length: 40 }, (_, lag) => {
+  const correlation = Float64Array.from({ length: broadening > 0 ? 160 : 1 }, (_, lag) => {
     let sum = 0;
     for (let k = 0; k < points; k += 1) sum += weights[k]! ** 2 * Math.cos((2 * Math.PI * lag * k) / size);
     return sum / power;
