@@ -4,6 +4,7 @@ import type { FilePort } from '../record/filePort.js';
 import type { Derived, Renderer, RunOnIndex } from '../record/renderer.js';
 import { type DeriveSeries, factsOf, type RunFacts } from '../record/runFacts.js';
 import { foldLedger } from '../record/runState.js';
+import { renderReport } from '../report/renderReport.js';
 import { renderSeriesCsv } from '../series/renderSeriesCsv.js';
 import { renderSeriesJson } from '../series/renderSeriesJson.js';
 import type { Series } from '../series/series.js';
@@ -19,7 +20,7 @@ export interface RenderParts {
 
 /** The renderer of the program. */
 export function recordRenderer(port: FilePort): Renderer {
-  return makeRecordRenderer(port, { seriesJson: renderSeriesJson, seriesCsv: renderSeriesCsv });
+  return makeRecordRenderer(port, { seriesJson: renderSeriesJson, seriesCsv: renderSeriesCsv, report: renderReport });
 }
 
 export const derivedNames = ['series.json', 'series.csv', 'report.html', 'report.pdf'] as const;

@@ -1,0 +1,200 @@
+import SVGtoPDF from 'svg-to-pdfkit';
+import { visible } from './escapeMarkup.js';
+import { PdfTable } from './pdfTable.js';
+import type { Block } from './reportModel.js';
+
+type Document = PDFKit.PDFDocument;
+
+const ink = '#1f2328';
+const soft = '#555b61';
+const size = { body: 9.2, small: 7.4, h1: 17, h2: 12.5, lead: 10.5 } as const;
+
+/** Sets blocks one below the other, with page breaks that widow no heading. Every piece is tagged. */
+export class PdfPage {
+  constructor(private readonly document: Document) {}
+
+  private get left(): number {
+    return this.document.page.margins.left;
+  }
+  private get width(): number {
+    return this.document.page.width - this.document.page.margins.left - this.document.page.margins.right;
+  }
+  private get bottom(): number {
+    return this.document.page.height - this.document.page.margins.bottom;
+  }
+
+  /** Starts a new page when less than this is left. */
+  private need(height: number): void {
+    if (this.document.y + height > this.bottom) this.document.addPage();
+  }
+
+  private tagged(tag: string, draw: () => void, alt?: string): void {
+    const structure = this.document.struct(tag as 'P', alt !== undefined ? { alt } : {}, draw);
+    this.document.addStructure(structure);
+    structure.end();
+  }
+
+  private paragraph(
+    tag: string,
+    text: string,
+    font: string,
+    points: number,
+    color: string,
+    options: PDFKit.Mixins.TextOptions = {},
+  ): void {
+    this.tagged(tag, () => {
+      this.document
+        .font(font)
+        .fontSize(points)
+        .fillColor(color)
+        .text(visible(text), this.left, this.document.y, { width: this.width, ...options });
+    });
+  }
+
+  kicker(text: string): void {
+    this.paragraph('P', text, 'regular', size.body, soft);
+  }
+
+  heading(level: 1 | 2, text: string): void {
+    if (level === 2) {
+      this.need(110);
+      this.document.moveDown(1.1);
+    }
+    this.paragraph(`H${level}`, text, 'bold', level === 1 ? size.h1 : size.h2, ink);
+    this.document.moveDown(0.4);
+  }
+
+  verdict(sentences: readonly string[]): void {
+    this.document.moveDown(0.3);
+    const top = this.document.y;
+    sentences.forEach((sentence, index) => {
+      this.need(30);
+      this.tagged('P', () => {
+        this.document
+          .font(index === 0 ? 'bold' : 'regular')
+          .fontSize(index === 0 ? size.lead : size.body)
+          .fillColor(ink);
+        this.document.text(visible(sentence), this.left + 12, this.document.y, { width: this.width - 12, paragraphGap: 3 });
+      });
+    });
+    if (this.document.y > top) {
+      this.document.markContent('Artifact', { type: 'Layout' });
+      this.document.rect(this.left, top, 3, this.document.y - top).fill('#0072B2');
+      this.document.endMarkedContent();
+    }
+    this.document.moveDown(0.6);
+  }
+
+  facts(facts: readonly (readonly [string, string])[]): void {
+    const table = {
+      kind: 'table' as const,
+      caption: '',
+      columns: [
+        { head: '', align: 'left' as const, weight: 1.3 },
+        { head: '', align: 'left' as const, weight: 5 },
+      ],
+      rows: facts.map(([label, value]) => [label, value]),
+    };
+    new PdfTable(this.document, this.left, this.width).draw(table, size.body, false);
+    this.document.moveDown(0.5);
+  }
+
+  blocks(blocks: readonly Block[]): void {
+    let pending: Extract<Block, { kind: 'figure' }> | undefined;
+    for (const block of blocks) {
+      if (block.kind === 'figure' && block.half) {
+        if (pending) {
+          this.pair(pending, block);
+          pending = undefined;
+        } else pending = block;
+        continue;
+      }
+      if (pending) this.pair(pending);
+      pending = undefined;
+      this.block(block);
+    }
+    if (pending) this.pair(pending);
+  }
+
+  private block(block: Block): void {
+    switch (block.kind) {
+      case 'text':
+        this.need(26);
+        this.paragraph('P', block.text, 'regular', size.body, block.tone === 'note' ? soft : ink, { paragraphGap: 4 });
+        return;
+      case 'list':
+        for (const item of block.items) {
+          this.need(20);
+          this.paragraph('P', `\u2022 ${item}`, 'regular', size.body, ink, { paragraphGap: 2 });
+        }
+        this.document.moveDown(0.3);
+        return;
+      case 'facts':
+        this.facts(block.facts);
+        return;
+      case 'code':
+        for (const line of block.text.split('\n')) {
+          this.need(12);
+          this.paragraph('P', line === '' ? ' ' : line, 'mono', 6.8, ink);
+        }
+        this.document.moveDown(0.5);
+        return;
+      case 'table':
+        this.need(60);
+        new PdfTable(this.document, this.left, this.width).draw(block, block.small ? size.small : size.body, true);
+        this.document.moveDown(0.7);
+        return;
+      case 'figure':
+        this.figure(block);
+    }
+  }
+
+  private figure(block: Extract<Block, { kind: 'figure' }>): void {
+    const height = (block.heightPx * this.width) / block.widthPx;
+    this.need(height + 34);
+    this.drawing(block, this.left, this.document.y, this.width, height);
+    this.document.y += height + 2;
+    this.paragraph('Caption', `${block.title}. ${block.description}`, 'regular', size.small, soft, { paragraphGap: 6 });
+  }
+
+  /** Two half-width figures side by side. */
+  private pair(one: Extract<Block, { kind: 'figure' }>, other?: Extract<Block, { kind: 'figure' }>): void {
+    const width = (this.width - 14) / 2;
+    const figures = other ? [one, other] : [one];
+    const heights = figures.map((figure) => (figure.heightPx * width) / figure.widthPx);
+    const captions = figures.map((figure) =>
+      this.document
+        .font('regular')
+        .fontSize(size.small)
+        .heightOfString(visible(`${figure.title}. ${figure.description}`), { width }),
+    );
+    const total = Math.max(...heights.map((height, index) => height + captions[index]! + 10));
+    this.need(total);
+    const top = this.document.y;
+    figures.forEach((figure, index) => {
+      const left = this.left + index * (width + 14);
+      this.drawing(figure, left, top, width, heights[index]!);
+      this.tagged('Caption', () => {
+        this.document
+          .font('regular')
+          .fontSize(size.small)
+          .fillColor(soft)
+          .text(visible(`${figure.title}. ${figure.description}`), left, top + heights[index]! + 2, { width });
+      });
+    });
+    this.document.y = top + total;
+  }
+
+  private drawing(block: Extract<Block, { kind: 'figure' }>, left: number, top: number, width: number, height: number): void {
+    this.tagged(
+      'Figure',
+      () => {
+        this.document.save();
+        const fontCallback = () => 'regular';
+        SVGtoPDF(this.document, block.svg, left, top, { width, height, assumePt: true, fontCallback });
+        this.document.restore();
+      },
+      visible(`${block.title}. ${block.description}`),
+    );
+  }
+}
