@@ -1,6 +1,7 @@
 import { randomUUID } from 'node:crypto';
 import { joinPath, pathText } from './bytePath.js';
 import type { FilePort, OpenFile, Path } from './filePort.js';
+import { hasProcess } from './processFacts.js';
 import { systemCode } from './recordProblem.js';
 
 const temporaryPrefix = '.new-';
@@ -30,6 +31,8 @@ export async function publishNew(port: FilePort, folder: Path, name: Path, bytes
     } catch (cause) {
       if (systemCode(cause) !== 'EEXIST') throw cause;
       await port.unlink(temporary);
+      // Whoever gave the name may have died before this: what is adopted must last as well.
+      await port.syncFolder(folder);
       return false;
     }
     await port.unlink(temporary);
@@ -52,7 +55,7 @@ async function withTemporary<T>(
   bytes: Uint8Array,
   publish: (path: Path) => Promise<T>,
 ): Promise<T> {
-  const temporary = joinPath(folder, `${temporaryPrefix}${randomUUID()}`);
+  const temporary = joinPath(folder, `${temporaryPrefix}${process.pid}-${randomUUID()}`);
   try {
     await writeTemporary(port, temporary, bytes);
     return await publish(temporary);
@@ -124,9 +127,15 @@ export async function makeFolders(port: FilePort, base: Path, names: readonly Pa
   return folder;
 }
 
-/** Removes what an interrupted publication left; call only while the record is held. */
+/**
+ * Removes what interrupted publications left; call only while the folder is held. Another live process may be asking for the
+ * folder at this moment: its temporary name stays.
+ */
 export async function removeTemporaries(port: FilePort, folder: Path): Promise<void> {
   for (const { name } of await port.readFolder(folder)) {
-    if (name.toString('latin1').startsWith(temporaryPrefix)) await port.unlink(joinPath(folder, name));
+    const text = name.toString('latin1');
+    if (!text.startsWith(temporaryPrefix)) continue;
+    const pid = Number.parseInt(text.slice(temporaryPrefix.length), 10);
+    if (pid === process.pid || !hasProcess(pid)) await port.unlink(joinPath(folder, name));
   }
 }

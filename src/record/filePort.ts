@@ -1,4 +1,4 @@
-import { constants } from 'node:fs';
+import { constants, lstatSync } from 'node:fs';
 import { link, lstat, mkdir, open, readdir, realpath, rename, stat, statfs, unlink } from 'node:fs/promises';
 
 /** A path as the program was given it, or as bytes when it came out of a folder listing (names need not be UTF-8). */
@@ -99,6 +99,15 @@ export const realFilePort: FilePort = {
     return { freeBytes: space.bavail * space.bsize, freeInodes: space.ffree, inodes: space.files, type: space.type };
   },
   realPath: async (path) => realpath(path),
+};
+
+/**
+ * The same, where a stat blocks its process: several times faster for thousands of files, and right only in the reading process,
+ * which does nothing else and can be killed.
+ */
+export const blockingStatPort: FilePort = {
+  ...realFilePort,
+  stat: async (path) => statOf(lstatSync(path, { bigint: true })),
 };
 
 async function openReal(path: Path, mode: OpenMode): Promise<OpenFile> {

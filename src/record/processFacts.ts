@@ -41,7 +41,9 @@ export function isAlive(holder: ProcessFacts, self: ProcessFacts = describeProce
   return holder.startTicks === undefined || startTicks === undefined || startTicks === holder.startTicks;
 }
 
-function hasProcess(pid: number): boolean {
+/** Whether a process id is in use. */
+export function hasProcess(pid: number): boolean {
+  if (!Number.isInteger(pid) || pid <= 0) return false;
   try {
     process.kill(pid, 0);
     return true;

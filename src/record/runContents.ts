@@ -7,6 +7,7 @@ import type { PointRecord } from '../point/pointRecord.js';
 import type { FilePort, Path } from './filePort.js';
 import { getPoint, getRaw } from './objectStore.js';
 import type { FileState, RunState } from './runState.js';
+import { thinDrawings } from './thinDrawings.js';
 
 /** A measured file with its records, one a spectrum block. */
 export interface ContentFile {
@@ -49,12 +50,16 @@ export async function loadContents(port: FilePort, folder: Path, state: RunState
   const files: ContentFile[] = [];
   const inputs: ContentInput[] = [];
   const sorted = [...state.files.values()].sort((a, b) => (a.key < b.key ? -1 : 1));
+  const count = sorted.reduce((sum, { kept }) => sum + (kept.points?.length ?? 0), 0);
+  let index = 0;
   for (const { kept } of sorted) {
     if (kept.state === 'vanished') continue;
     if (kept.state === 'measured') {
       const file = await loadFile(port, folder, kept);
       if (!file.ok) return file;
-      files.push(file.value);
+      const first = index;
+      index += file.value.records.length;
+      files.push({ ...file.value, records: file.value.records.map((record, at) => thinDrawings(record, first + at, count)) });
       continue;
     }
     const hash = kept.sha256 !== undefined ? { sha256: kept.sha256 } : {};

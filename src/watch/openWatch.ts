@@ -1,6 +1,6 @@
 import { dirname, relative, resolve, sep } from 'node:path';
 import { fail, ok, type Problem, type Result } from '../base/result.js';
-import { makeFolders } from '../record/durable.js';
+import { makeFolders, removeTemporaries } from '../record/durable.js';
 import type { FilePort } from '../record/filePort.js';
 import type { Measurer } from '../record/measurer.js';
 import { lockOptions, type RecordContext } from '../record/recordContext.js';
@@ -40,7 +40,15 @@ export async function openWatch(parts: WatchParts): Promise<Result<OpenWatch>> {
   if (!made.ok) return made;
   const lock = await takeLock(lockOptions(context, settings.outputFolder));
   if (!lock.ok) return lock;
-  return ok(begin(parts, lock.value));
+  const opened = begin(parts, lock.value);
+  try {
+    await removeTemporaries(context.port, settings.outputFolder);
+    return ok(opened);
+  } catch (cause) {
+    const problem = outputProblem(cause, settings.outputFolder);
+    await opened.close();
+    return fail(problem);
+  }
 }
 
 function begin(parts: WatchParts, lock: RecordLock): OpenWatch {

@@ -1,4 +1,4 @@
-import { realFilePort } from '../record/filePort.js';
+import { blockingStatPort } from '../record/filePort.js';
 import { makeShareReader } from './shareReader.js';
 
 /** What the watcher asks of the reading process. */
@@ -8,7 +8,7 @@ export type ShareRequest =
   | { readonly ask: 'readPath'; readonly path: string };
 
 /** Runs in a process of its own, because a hung server hangs whoever asks it. */
-const reader = makeShareReader(realFilePort, process.argv[2] ?? '');
+const reader = makeShareReader(blockingStatPort, process.argv[2] ?? '');
 
 process.on('message', async (request: ShareRequest) => {
   process.send?.(await answer(request));

@@ -34,6 +34,10 @@ async function expectRecovered(world: World, expected: Record<string, string>, w
   expect(again.ok, what).toBe(true);
   expect(failures(await verify(world)), what).toEqual([]);
   expect(lasting(world.disk), what).toEqual(expected);
+  expect(
+    [...world.disk.files('/out').keys()].filter((path) => /\/\.new-|^\/out\/\.held-by/.test(path)),
+    `${what}: left behind`,
+  ).toEqual([]);
   const inputs = ledgerOf(world).filter(({ kind }) => kind === 'input') as unknown as InputEntry[];
   expect(inputs.map(({ file }) => file).sort(), what).toEqual([...new Set(inputs.map(({ file }) => file))].sort());
   expect(ledgerOf(world).length, what).toBeGreaterThanOrEqual(acknowledged);

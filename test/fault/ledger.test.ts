@@ -81,6 +81,14 @@ describe('a ledger that is not as it was left', () => {
       expect(kept.slice(0, complete), `cut to ${length}`).toEqual(lines.slice(0, complete));
       expect(kept).toHaveLength(whole[length - 1] === 0x0a ? complete : complete + 1);
       if (whole[length - 1] !== 0x0a) expect(ledgerOf(cut).at(-1)).toMatchObject({ kind: 'exception', name: 'recovered' });
+      const torn = whole.subarray(whole.lastIndexOf(0x0a, length - 1) + 1, length);
+      if (torn.length > 0)
+        expect(
+          cut.disk
+            .files()
+            .get(`${run}/torn/${sha256(torn)}.bin`)
+            ?.equals(torn),
+        ).toBe(true);
       if (length % 40 !== 0) continue;
       const summary = await pass(cut);
       expect(summary.ok && summary.value.problems, `cut to ${length}`).toEqual([]);
@@ -135,6 +143,22 @@ describe('a ledger that is not as it was left', () => {
       expect(summary.ok && summary.value.problems.map(({ code }) => code)).toContain('object-damaged');
       expect(world.disk.files().get(`${run}/report.html`)).toEqual(before);
     }
+  });
+
+  it('F18: a damaged stored file is not taken for the captured bytes when they come again', async () => {
+    const world = await night();
+    const [path] = [...world.disk.files(`${run}/raw`).keys()].filter((name) =>
+      name.includes(sha256(files['BX-0417/tp-001.jdx']!)),
+    );
+    const bytes = Buffer.from(world.disk.files().get(path!)!);
+    bytes[bytes.length - 6]! ^= 1;
+    world.disk.write(path!, bytes);
+    expect(await amend(world, { action: 'measure-again' })).toMatchObject({ ok: false, problem: { code: 'object-damaged' } });
+    const fresh = makeWorld(files);
+    fresh.disk.write(path!, bytes);
+    fresh.disk.write(ledgerPath, joined(linesOf(world).slice(0, 1)));
+    const summary = await pass(fresh);
+    expect(summary.ok && summary.value.problems.map(({ code }) => code)).toContain('object-damaged');
   });
 
   it('F68: put back to an older copy is found by the printed head and by derived files that are newer', async () => {

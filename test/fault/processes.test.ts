@@ -4,6 +4,7 @@ import { join } from 'node:path';
 import { afterEach, describe, expect, it } from 'vitest';
 import { makeKillable } from '../../src/watch/killableProcess.js';
 import { makeMeasurePool } from '../../src/watch/measurePool.js';
+import { feedRounds } from './feedRounds.js';
 import { killRounds } from './killRounds.js';
 import {
   driver,
@@ -274,5 +275,15 @@ describe('real processes', () => {
     const again = await start(process.execPath, [program, ...args]).ended;
     expect(again.code).toBe(4);
     expect(again.stdout).toBe(first.stdout.replace('"taken": 1', '"taken": 0'));
+  });
+});
+
+describe('a night of a user', () => {
+  it('fed slowly, in bursts and out of order while the watcher is killed, ends as a quiet pass', {
+    timeout: 120_000,
+  }, async () => {
+    const figures = await feedRounds(60, 8, 7, 6000);
+    expect(figures).toMatchObject({ lost: 0, duplicated: 0, differing: 0, verifyFailures: [], shareChanged: false });
+    expect(figures.kills).toBeGreaterThanOrEqual(8);
   });
 });

@@ -1,4 +1,5 @@
 import { describe, expect, it } from 'vitest';
+import { feedRounds } from '../fault/feedRounds.js';
 import { killRounds } from '../fault/killRounds.js';
 import { randomFaults } from '../fault/randomFaults.js';
 
@@ -15,6 +16,13 @@ describe(`soak, seed ${seed}`, () => {
     const figures = await killRounds(kills, seed);
     console.log(`seed ${seed}: ${JSON.stringify(figures)}`);
     expect(figures).toMatchObject({ lost: 0, duplicated: 0, differing: 0, verifyFailures: [], shareChanged: false });
+  });
+
+  it('500 time points fed slowly, in bursts and out of order, with 100 kills, end as a quiet pass', async () => {
+    const figures = await feedRounds(500, 100, seed, 60_000);
+    console.log(`seed ${seed}: ${JSON.stringify(figures)}`);
+    expect(figures).toMatchObject({ lost: 0, duplicated: 0, differing: 0, verifyFailures: [], shareChanged: false });
+    expect(figures.kills).toBeGreaterThanOrEqual(100);
   });
 
   it(`${minutes} minutes of random faults lose, repeat and change nothing`, async () => {
