@@ -1,3 +1,5 @@
+import { deriveHighlights } from './deriveHighlights.js';
+import { deriveTraces } from './deriveTraces.js';
 import { formatTime } from './formatNumber.js';
 import type { ReportInput } from './reportInput.js';
 import type { ReportModel } from './reportModel.js';
@@ -20,6 +22,7 @@ export function deriveReportModel(input: ReportInput): ReportModel {
   const { series, runFile, head, createdUtc, program } = input;
   const batch = runFile.batch ?? series.run;
   const isFinal = series.states.some(({ state }) => state === 'final');
+  const traces = deriveTraces(input);
   const reportId = `${series.run}-${head.seq}-${head.hash.slice(0, 8)}`;
   return {
     title: `${series.method.title}, batch ${batch}`,
@@ -37,6 +40,7 @@ export function deriveReportModel(input: ReportInput): ReportModel {
       ['Program', `kinetrail ${program}`],
       ...(runFile.notes !== undefined ? [['Notes', runFile.notes] as const] : []),
     ],
+    highlights: deriveHighlights(input),
     verdict: verdictSentences(input),
     sections: [
       conversionSection(input),
@@ -47,5 +51,6 @@ export function deriveReportModel(input: ReportInput): ReportModel {
       changesSection(input),
       cautionsSection(input),
     ],
+    ...(traces !== undefined ? { traces } : {}),
   };
 }

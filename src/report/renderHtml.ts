@@ -1,94 +1,86 @@
 import { createHash } from 'node:crypto';
 import { escapeMarkup } from './escapeMarkup.js';
+import { fillTemplate, type TemplateValues } from './fillTemplate.js';
 import { formatTime } from './formatNumber.js';
-import type { Block, ReportModel, Section } from './reportModel.js';
+import { renderBlocks } from './html/renderBlock.js';
+import type { ReportModel } from './reportModel.js';
+import { shippedTemplates, type TemplateSet } from './templateSet.js';
 
 /**
- * Draws the model as one self-contained page: no script, no outside reference, a policy that forbids both.
+ * The report as one HTML file that opens offline and is whole without script. The script only adds comfort.
  *
- * @param css the style sheet; its hash stands in the content security policy
+ * @returns the page; nothing in it may load or send anything, which its content policy says to the browser too
  */
-export function renderHtml(model: ReportModel, css: string): string {
-  const style = css.replaceAll('</', '<\\/');
-  const hash = createHash('sha256').update(style).digest('base64');
-  const kind = model.isFinal ? 'Final report' : '<span class="interim">Interim report</span>';
+export function renderHtml(model: ReportModel, templates: TemplateSet = shippedTemplates()): string {
+  const body = fillTemplate(templates.reportPage, valuesOf(model));
+  const traces = model.traces ? `<script type="application/json" id="traces">${jsonForPage(model.traces)}</script>` : '';
+  return pageOf({
+    title: `${model.title}: ${model.isFinal ? 'final' : 'interim'} report`,
+    body: `${body}\n${traces}`,
+    style: templates.reportStyle,
+    script: templates.script,
+  });
+}
+
+function valuesOf(model: ReportModel): TemplateValues {
+  return {
+    title: model.title,
+    reportId: model.reportId,
+    state: model.isFinal ? 'final' : 'interim',
+    created: formatTime(model.createdUtc),
+    program: model.program,
+    batch: model.batch,
+    identity: model.identity.map(([label, value]) => ({ label, value })),
+    highlights: model.highlights.map(({ label, value, detail, tone }) => ({ label, value, detail, tone })),
+    verdict: model.verdict.map((sentence) => ({ sentence })),
+    sections: model.sections.map(({ id, heading, blocks }) => ({ id, heading, blocks: { markup: renderBlocks(blocks) } })),
+  };
+}
+
+/** A page around a body: character set, content policy with the hashes of its own style and script, nothing from outside. */
+export function pageOf({
+  title,
+  body,
+  style,
+  script,
+  refreshS,
+}: {
+  readonly title: string;
+  readonly body: string;
+  readonly style: string;
+  readonly script?: string;
+  readonly refreshS?: number;
+}): string {
+  const policy = [
+    "default-src 'none'",
+    `style-src ${hashOf(style)}`,
+    ...(script !== undefined ? [`script-src ${hashOf(script)}`] : []),
+    "base-uri 'none'",
+    "form-action 'none'",
+  ].join('; ');
   return `<!doctype html>
 <html lang="en">
 <head>
 <meta charset="utf-8">
-<meta http-equiv="Content-Security-Policy" content="default-src 'none'; style-src 'sha256-${hash}'; img-src data:; base-uri 'none'; form-action 'none'">
+<meta http-equiv="Content-Security-Policy" content="${policy}">
 <meta name="viewport" content="width=device-width, initial-scale=1">
-<title>${escapeMarkup(model.title)}</title>
+<meta name="color-scheme" content="light dark">
+<meta name="referrer" content="no-referrer">
+${refreshS !== undefined ? `<meta http-equiv="refresh" content="${refreshS}">\n` : ''}<title>${escapeMarkup(title)}</title>
 <style>${style}</style>
 </head>
 <body>
-<a class="skip" href="#main">Skip to the report</a>
-<header>
-<p class="kicker">${kind} ${escapeMarkup(model.reportId)} &#183; ${escapeMarkup(formatTime(model.createdUtc))}</p>
-<h1>${escapeMarkup(model.title)}</h1>
-<section class="verdict" aria-label="Verdict">
-${model.verdict.map((sentence) => `<p>${escapeMarkup(sentence)}</p>`).join('\n')}
-</section>
-<dl>${model.identity.map(([label, value]) => `<dt>${escapeMarkup(label)}</dt><dd>${escapeMarkup(value)}</dd>`).join('')}</dl>
-<nav aria-label="Sections"><ul>${model.sections.map(({ id, heading }) => `<li><a href="#${id}">${escapeMarkup(heading)}</a></li>`).join('')}</ul></nav>
-</header>
-<main id="main">
-${model.sections.map(sectionHtml).join('\n')}
-</main>
-<footer><p>kinetrail ${escapeMarkup(model.program)}; report ${escapeMarkup(model.reportId)}</p></footer>
-</body>
+${body}
+${script !== undefined ? `<script>${script}</script>\n` : ''}</body>
 </html>
 `;
 }
 
-function sectionHtml({ id, heading, blocks }: Section): string {
-  const parts: string[] = [];
-  let gallery: string[] = [];
-  const close = () => {
-    if (gallery.length > 0) parts.push(`<div class="figures">${gallery.join('')}</div>`);
-    gallery = [];
-  };
-  for (const block of blocks) {
-    if (block.kind === 'figure' && block.half) gallery.push(blockHtml(block));
-    else {
-      close();
-      parts.push(blockHtml(block));
-    }
-  }
-  close();
-  return `<section id="${id}" aria-labelledby="${id}-h"><h2 id="${id}-h">${escapeMarkup(heading)}</h2>\n${parts.join('\n')}\n</section>`;
+function hashOf(text: string): string {
+  return `'sha256-${createHash('sha256').update(text).digest('base64')}'`;
 }
 
-function blockHtml(block: Block): string {
-  switch (block.kind) {
-    case 'text':
-      return `<p${block.tone === 'note' ? ' class="note"' : ''}>${escapeMarkup(block.text)}</p>`;
-    case 'list':
-      return `<ul>${block.items.map((item) => `<li>${escapeMarkup(item)}</li>`).join('')}</ul>`;
-    case 'facts':
-      return `<dl>${block.facts.map(([label, value]) => `<dt>${escapeMarkup(label)}</dt><dd>${escapeMarkup(value)}</dd>`).join('')}</dl>`;
-    case 'code':
-      return `<pre tabindex="0">${escapeMarkupLong(block.text)}</pre>`;
-    case 'figure':
-      return `<figure>${block.svg}<figcaption><strong>${escapeMarkup(block.title)}.</strong> ${escapeMarkup(block.description)}</figcaption></figure>`;
-    case 'table':
-      return tableHtml(block);
-  }
-}
-
-function tableHtml({ caption, columns, rows, small }: Extract<Block, { kind: 'table' }>): string {
-  const side = (index: number) => (columns[index]?.align === 'right' ? ' class="r"' : '');
-  const head = columns.map((column, index) => `<th scope="col"${side(index)}>${escapeMarkup(column.head)}</th>`).join('');
-  const body = rows
-    .map(
-      (row) =>
-        `<tr>${row.map((cell, index) => (index === 0 ? `<th scope="row">${escapeMarkup(cell)}</th>` : `<td${side(index)}>${escapeMarkup(cell)}</td>`)).join('')}</tr>`,
-    )
-    .join('\n');
-  return `<div class="scroll" tabindex="0" role="region" aria-label="${escapeMarkup(caption)}"><table${small ? ' class="small"' : ''}><caption>${escapeMarkup(caption)}</caption><thead><tr>${head}</tr></thead><tbody>${body}</tbody></table></div>`;
-}
-
-/** A method file may be longer than what one cell is clipped to. */
-function escapeMarkupLong(text: string): string {
-  return text.split('\n').map(escapeMarkup).join('\n');
+/** JSON inside a page: no character in it can end the element that holds it. */
+function jsonForPage(value: unknown): string {
+  return JSON.stringify(value).replace(/[<>&\u2028\u2029]/g, (c) => `\\u${c.charCodeAt(0).toString(16).padStart(4, '0')}`);
 }

@@ -25,6 +25,8 @@ export type Block =
       readonly widthPx: number;
       readonly heightPx: number;
       readonly half?: boolean;
+      /** The numbers behind the drawing, for those who cannot see it; only where no other table gives them. */
+      readonly numbers?: Extract<Block, { kind: 'table' }>;
     }
   | { readonly kind: 'code'; readonly text: string };
 
@@ -32,6 +34,33 @@ export interface Section {
   readonly id: string;
   readonly heading: string;
   readonly blocks: readonly Block[];
+}
+
+/** One answer of page 1, large. */
+export interface Highlight {
+  readonly label: string;
+  readonly value: string;
+  readonly detail: string;
+  readonly tone: 'good' | 'look' | 'plain';
+}
+
+/** Drawings of the time points for choosing one in the page, each value in two characters: see `deriveTraces`. */
+export interface Traces {
+  readonly note: string;
+  readonly points: readonly TracePoint[];
+}
+
+export interface TracePoint {
+  readonly label: string;
+  readonly words: readonly string[];
+  readonly overview?: { readonly firstPpm: number; readonly lastPpm: number; readonly low: string; readonly high: string };
+  readonly strips: readonly {
+    readonly signal: string;
+    readonly firstPpm: number;
+    readonly stepPpm: number;
+    readonly data: string;
+    readonly fit: string;
+  }[];
 }
 
 /** The report as both HTML and PDF draw it: every number formatted and every sentence chosen once. */
@@ -43,6 +72,8 @@ export interface ReportModel {
   readonly program: string;
   readonly batch: string;
   readonly identity: readonly (readonly [label: string, value: string])[];
+  readonly highlights: readonly Highlight[];
   readonly verdict: readonly string[];
   readonly sections: readonly Section[];
+  readonly traces?: Traces;
 }

@@ -1,5 +1,6 @@
 import { area, line } from 'd3-shape';
 import type { Series } from '../../series/series.js';
+import { formatElapsed, formatPercent } from '../formatNumber.js';
 import { label, makeFrame, marker, n, wrapSvg } from './frame.js';
 import { ink, seriesStyles } from './palette.js';
 
@@ -46,7 +47,7 @@ export function conversionChart(
     const y = frame.y(100 * target);
     parts.push(
       `<line x1="${frame.plot.left}" x2="${frame.plot.right}" y1="${n(y)}" y2="${n(y)}" stroke="#D55E00" stroke-width="1.2" stroke-dasharray="6 3"/>`,
-      label(frame.plot.left + 6, y - 5, `target ${round(100 * target)} %`, 'start', '#a84a00'),
+      label(frame.plot.left + 6, y - 5, `target ${round(100 * target)} %`, 'start', ink.text),
     );
   }
   parts.push(...forecastMark(series, frame, hours));
@@ -56,7 +57,15 @@ export function conversionChart(
     const [y1, y2] = [clip(frame.y(100 * (value - 2 * u))), clip(frame.y(100 * (value + 2 * u)))];
     parts.push(
       `<line x1="${n(x)}" x2="${n(x)}" y1="${n(y1)}" y2="${n(y2)}" stroke="${style.color}" stroke-width="1.2"/>`,
-      marker(status === 'flagged' ? 'square' : 'circle', x, clip(y), style.color, status === 'flagged'),
+      marker(
+        status === 'flagged' ? 'square' : 'circle',
+        x,
+        clip(y),
+        style.color,
+        status === 'flagged',
+        points.length > 120 ? 2.2 : 3.4,
+        `${formatElapsed(elapsedS)}: ${formatPercent(value, u)}${status === 'flagged' ? ', flagged' : ''}`,
+      ),
     );
   }
   for (const { elapsedS } of aside) parts.push(marker('cross', frame.x(hours(elapsedS)), frame.plot.bottom - 8, ink.soft));

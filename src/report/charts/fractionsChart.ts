@@ -1,8 +1,9 @@
 import { line } from 'd3-shape';
 import type { Method } from '../../method/method.js';
 import type { Series } from '../../series/series.js';
+import { formatElapsed, formatQuantity } from '../formatNumber.js';
 import { label, makeFrame, marker, wrapSvg } from './frame.js';
-import { seriesStyles } from './palette.js';
+import { ink, seriesStyles } from './palette.js';
 
 /** Mole fractions of every species that has one, against time, each labelled at its end. */
 export function fractionsChart(
@@ -23,26 +24,35 @@ export function fractionsChart(
     marginRightPx: 170,
   });
   const parts = [frame.svg];
-  const ends: { y: number; text: string; color: string }[] = [];
+  const ends: { y: number; text: string; color: string; marker: string }[] = [];
   shown.forEach(({ id, name }, index) => {
     const style = seriesStyles[index % seriesStyles.length]!;
     const data = points.flatMap(({ elapsedS, amounts }) => {
       const fraction = amounts!.species[id]?.moleFraction;
       return fraction === undefined
         ? []
-        : [{ x: frame.x(elapsedS / 3600), y: frame.y(Math.max(-0.05, Math.min(1.05, fraction))) }];
+        : [
+            {
+              x: frame.x(elapsedS / 3600),
+              y: frame.y(Math.max(-0.05, Math.min(1.05, fraction))),
+              tip: `${name}, ${formatElapsed(elapsedS)}: ${formatQuantity(fraction, amounts!.species[id]!.moleFractionU)}`,
+            },
+          ];
     });
     const path = line<{ x: number; y: number }>()
       .x(({ x }) => Math.round(x * 10) / 10)
       .y(({ y }) => Math.round(y * 10) / 10)(data);
     parts.push(
       `<path d="${path ?? ''}" fill="none" stroke="${style.color}" stroke-width="1.3"${style.dash ? ` stroke-dasharray="${style.dash}"` : ''}/>`,
-      ...data.map(({ x, y }) => marker(style.marker, x, y, style.color, false, 2.6)),
+      ...data.map(({ x, y, tip }) => marker(style.marker, x, y, style.color, false, data.length > 120 ? 1.8 : 2.6, tip)),
     );
-    ends.push({ y: data.at(-1)?.y ?? 0, text: name, color: style.color });
+    ends.push({ y: data.at(-1)?.y ?? 0, text: name, color: style.color, marker: style.marker });
   });
-  for (const { y, text, color } of spread(ends))
-    parts.push(label(frame.plot.right + 8, y + 4, text.length > 24 ? `${text.slice(0, 23)}...` : text, 'start', color));
+  for (const { y, text, color, marker: kind } of spread(ends))
+    parts.push(
+      marker(kind, frame.plot.right + 12, y, color, false, 3),
+      label(frame.plot.right + 20, y + 4, text.length > 22 ? `${text.slice(0, 21)}...` : text, 'start', ink.text),
+    );
   const description = `Mole fractions of ${shown.map(({ name }) => name).join(', ')} over ${points.length} points; the numbers stand in the table of time points and in series.csv.`;
   return {
     svg: wrapSvg('fractions', widthPx, heightPx, 'Mole fractions against time', description, parts),

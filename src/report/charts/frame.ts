@@ -93,7 +93,12 @@ export function wrapSvg(
 }
 
 /** A marker of the given kind, filled or hollow. */
-export function marker(kind: string, x: number, y: number, color: string, isHollow = false, size = 3.4): string {
+export function marker(kind: string, x: number, y: number, color: string, isHollow = false, size = 3.4, tip?: string): string {
+  const drawn = markerShape(kind, x, y, color, isHollow, size);
+  return tip === undefined ? drawn : `<g data-tip="${escapeMarkup(tip)}">${drawn}</g>`;
+}
+
+function markerShape(kind: string, x: number, y: number, color: string, isHollow: boolean, size: number): string {
   const look = isHollow
     ? `fill="#ffffff" stroke="${color}" stroke-width="1.4"`
     : `fill="${color}" stroke="${color}" stroke-width="1"`;

@@ -1,5 +1,6 @@
 import { conversionChart } from '../charts/conversionChart.js';
 import { fractionsChart } from '../charts/fractionsChart.js';
+import { massBalanceChart } from '../charts/massBalanceChart.js';
 import { formatQuantity } from '../formatNumber.js';
 import type { ReportInput } from '../reportInput.js';
 import type { Block, Section } from '../reportModel.js';
@@ -37,5 +38,7 @@ export function conversionSection({ series, method }: ReportInput): Section {
   }
   const fractions = fractionsChart(series, method);
   if (fractions) blocks.push({ kind: 'figure', title: 'Mole fractions against time', ...fractions });
+  const balance = massBalanceChart(series);
+  if (balance) blocks.push({ kind: 'figure', title: 'Mass balance against time', ...balance });
   return { id: 'conversion', heading: 'Conversion', blocks };
 }

@@ -9,14 +9,14 @@ export function pointsSection({ series, method }: ReportInput): Section {
     .slice(0, 5);
   const columns = [
     { head: 'file', align: 'left' as const, weight: 2.4 },
-    { head: 'elapsed', align: 'right' as const, weight: 1.6 },
-    { head: 'conversion', align: 'right' as const, weight: 1.5 },
-    { head: 'u', align: 'right' as const, weight: 1.2 },
+    { head: 'elapsed', align: 'right' as const, weight: 1.9 },
+    { head: 'conversion', align: 'right' as const, weight: 1.9 },
+    { head: 'u', align: 'right' as const, weight: 1.5 },
     ...species.map(({ name, id }) => ({ head: `x(${name.length > 14 ? id : name})`, align: 'right' as const, weight: 1.6 })),
-    { head: 'S/N', align: 'right' as const, weight: 1 },
-    { head: 'axis moved / ppm', align: 'right' as const, weight: 1.3 },
+    { head: 'S/N', align: 'right' as const, weight: 1.2 },
+    { head: 'drift / ppm', align: 'right' as const, weight: 1.5 },
     { head: 'status and flags', align: 'left' as const, weight: 3.2 },
-    { head: 'SHA-256', align: 'left' as const, weight: 1.5 },
+    { head: 'SHA-256', align: 'left' as const, weight: 2.2 },
   ];
   const rows = series.points.map((point) => {
     const amounts = point.status === 'set-aside' ? undefined : point.amounts;

@@ -1,4 +1,5 @@
 import type { SeriesPoint } from '../../series/series.js';
+import { driftChart } from '../charts/driftChart.js';
 import { stackChart } from '../charts/stackChart.js';
 import { stripChart } from '../charts/stripChart.js';
 import { formatElapsed, formatQuantity, formatValue } from '../formatNumber.js';
@@ -24,6 +25,8 @@ export function signalsSection({ series, method }: ReportInput): Section {
   signals.forEach(({ name, signal }, index) => {
     const stack = stackChart(`stack-${index}`, usable, signal.key, `${name}, ${signal.id}: through time`);
     if (stack) blocks.push({ kind: 'figure', title: `${name}, ${signal.id}: through time`, half: true, ...stack });
+    const drift = driftChart(`drift-${index}`, usable, signal.key, `${name}, ${signal.id}: shift through time`);
+    if (drift) blocks.push({ kind: 'figure', title: `${name}, ${signal.id}: shift through time`, half: true, ...drift });
     chosen.forEach((point, place) => {
       const measured = point.record.measurement!.signals.find(({ key }) => key === signal.key);
       const title = `${name}, ${signal.id}: ${formatElapsed(point.elapsedS)}`;
