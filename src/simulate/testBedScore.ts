@@ -20,7 +20,7 @@ export interface BedScore {
   /** Signal-free places, in units of the noise. */
   readonly baselineMean?: number;
   readonly baselineRms?: number;
-  /** Bias of the area of a signal of 20 sigma height, 95 % quantile over signal-free places, as a share. */
+  /** Bias of the fitted area of a signal of 20 sigma height, rms over signal-free places, as a share. */
   readonly areaBias?: number;
   /** Stated over true noise. */
   readonly noiseRatio?: number;
@@ -148,7 +148,7 @@ function onsetScore({ timing }: BedCase, spectrum: Spectrum): { onsetErrorPoints
 }
 
 function baselineScore(
-  { groups, shape }: BedCase,
+  { groups }: BedCase,
   spectrum: Spectrum,
   truth: Float64Array,
   error: Float64Array,
@@ -162,24 +162,23 @@ function baselineScore(
   if (free.length < 500) return {};
   const mean = free.reduce((sum, i) => sum + error[i]!, 0) / free.length;
   const rms = Math.sqrt(free.reduce((sum, i) => sum + (error[i]! - mean) ** 2, 0) / free.length);
-  void shape;
   const narrowHz = Math.min(...groups.flatMap(({ lines }) => lines.map(({ widthHz }) => widthHz))) + done.lineBroadeningHz;
-  const bias = windowBias(error, free, Math.max(1, Math.round((5 * narrowHz) / spectrum.stepHz)));
-  const area = 20 * sigma * (Math.PI / 2) * narrowHz;
-  return { baselineMean: Math.abs(mean) / sigma, baselineRms: rms / sigma, areaBias: (bias * spectrum.stepHz) / area };
+  const level = windowRms(error, free, Math.max(1, Math.round((2 * narrowHz) / spectrum.stepHz)));
+  // A line of height H fitted by its shape takes up twice a constant offset: sum L / sum L^2 = 2.
+  return { baselineMean: Math.abs(mean) / sigma, baselineRms: rms / sigma, areaBias: (2 * level) / (20 * sigma) };
 }
 
-/** 95 % quantile of |sum of the error| over windows of 2 reach + 1 points that lie in signal-free places. */
-function windowBias(error: Float64Array, free: readonly number[], reach: number): number {
-  const sums: number[] = [];
+/** rms over windows of 2 reach + 1 points in signal-free places of the mean error in the window. */
+function windowRms(error: Float64Array, free: readonly number[], reach: number): number {
+  let [sum2, count] = [0, 0];
   for (let k = 0; k + 2 * reach < free.length; k += 2 * reach + 1) {
     if (free[k + 2 * reach]! - free[k]! !== 2 * reach) continue;
     let sum = 0;
     for (let i = free[k]!; i <= free[k + 2 * reach]!; i += 1) sum += error[i]!;
-    sums.push(Math.abs(sum));
+    sum2 += (sum / (2 * reach + 1)) ** 2;
+    count += 1;
   }
-  sums.sort((a, b) => a - b);
-  return sums[Math.floor(0.95 * sums.length)] ?? Number.NaN;
+  return count > 0 ? Math.sqrt(sum2 / count) : Number.NaN;
 }
 
 function axisScore({ timing, groups }: BedCase, spectrum: Spectrum, done: Done) {

@@ -11,7 +11,19 @@ import { buildsUp, transformFid } from './transformFid.js';
 /** A complex spectrum before phasing, with what is known of how it came about. */
 export interface Raw {
   readonly spectrum: ComplexSpectrum;
+  /** The same under a stronger window and without zero filling: lines are found and phases measured here. */
+  readonly analysis: ComplexSpectrum;
+  /** By how much lines are broader in `analysis`, Hz. */
+  readonly analysisBroadeningHz: number;
+  /** Independent points behind `analysis`. */
+  readonly analysisIndependent: number;
   readonly onsetPoints?: number;
+  /** Where time zero may lie, points from the start of the FID. */
+  /** Points before zero filling: what noise is independent in. */
+  readonly independentPoints: number;
+  readonly originRange?: readonly [number, number];
+  /** How a first-order phase acts: through each line (a shift in time), or line by line (points are missing). */
+  readonly turnsThrough: boolean;
   /** Known for a FID, measured later for a spectrum. */
   readonly noiseCorrelation?: Float64Array;
   readonly acquisitionS?: number;
@@ -22,6 +34,11 @@ export interface Raw {
 
 /** Window time constant: the exponential has fallen to exp(-pi x 0.6) = 15 % at the end of the acquisition. */
 const matchedShare = 0.6;
+/** Under the window of the analysis the cut at the end of a FID leaves no ripple worth the name: exp(-pi x 1.8) = 0.35 %. */
+const analysisShare = 1.8;
+/** So much of a FID says all about phase and places of lines; more would only add noise. */
+const analysisS = 2.5;
+const analysisPointsMin = 2048;
 
 /**
  * Brings any acquisition to a complex spectrum, lowest index lowest frequency: a FID is windowed and transformed, a complex
@@ -39,20 +56,36 @@ function fromFid(acquisition: Acquisition, processing: Processing, givenOnset: n
   const { real } = acquisition;
   const imag = acquisition.imag ?? new Float64Array(real.length);
   const dwellS = acquisition.dwellS ?? 1 / acquisition.spectralWidthHz;
-  const onsetPoints = givenOnset !== undefined ? Math.round(givenOnset) : findOnset(real, imag);
+  const onset =
+    givenOnset === undefined
+      ? findOnset(real, imag)
+      : { wholePoints: Math.round(givenOnset), rangePoints: [givenOnset - 1.5, givenOnset + 1.5] as const };
+  const onsetPoints = onset.wholePoints;
   const kept = real.length - onsetPoints;
   const acquisitionS = kept * dwellS;
   const lineBroadeningHz =
     processing.lineBroadeningHz === 'matched' ? Math.min(5, matchedShare / acquisitionS) : processing.lineBroadeningHz;
   const { zeroFilling } = processing;
   const keepsEarly = buildsUp(real, imag, onsetPoints);
-  const whole = transformFid(real, imag, dwellS, { onsetPoints, lineBroadeningHz, zeroFilling, keepsEarly });
+  const transform = (broadeningHz: number, factor: number, end: number) => {
+    const settings = { onsetPoints, lineBroadeningHz: broadeningHz, zeroFilling: factor, keepsEarly };
+    const whole = transformFid(real.subarray(0, end), imag.subarray(0, end), dwellS, settings);
+    return isReal ? upperHalf(whole) : whole;
+  };
   const isReal = acquisition.imag === undefined;
-  const spectrum = isReal ? upperHalf(whole) : whole;
+  const spectrum = transform(lineBroadeningHz, zeroFilling, real.length);
+  const analysisPoints = Math.min(kept, Math.max(analysisPointsMin, Math.ceil(analysisS / dwellS)));
+  const analysisHz = Math.max(lineBroadeningHz, analysisShare / (analysisPoints * dwellS));
   const points = powerOfTwoFrom(Math.max(real.length, kept * zeroFilling));
   return {
     spectrum,
+    analysis: transform(analysisHz, 1, onsetPoints + analysisPoints),
+    analysisIndependent: isReal ? analysisPoints / 2 : analysisPoints,
+    analysisBroadeningHz: analysisHz - lineBroadeningHz,
     onsetPoints,
+    originRange: onset.rangePoints,
+    turnsThrough: keepsEarly,
+    independentPoints: isReal ? kept / 2 : kept,
     noiseCorrelation: noiseCorrelationOf(kept, points, Math.PI * lineBroadeningHz * dwellS),
     acquisitionS,
     isReal: false,
@@ -80,6 +113,11 @@ function fromSpectrum(acquisition: Acquisition): Raw {
     const imag = hilbertPartner(real);
     return {
       spectrum: { real, imag, stepHz },
+      analysis: { real, imag, stepHz },
+      analysisBroadeningHz: 0,
+      analysisIndependent: real.length,
+      turnsThrough: true,
+      independentPoints: real.length,
       isReal: true,
       steps: [{ step: 'dispersive partner', parameters: { by: 'Hilbert transform' } }],
     };
@@ -89,6 +127,11 @@ function fromSpectrum(acquisition: Acquisition): Raw {
   const imag = isMirrored ? given.map((value) => -value) : given;
   return {
     spectrum: { real, imag, stepHz },
+    analysis: { real, imag, stepHz },
+    analysisBroadeningHz: 0,
+    analysisIndependent: real.length,
+    turnsThrough: true,
+    independentPoints: real.length,
     isReal: false,
     steps: [{ step: 'complex spectrum', parameters: { imaginary_sign_turned: isMirrored } }],
   };

@@ -1,4 +1,4 @@
-import type { LocalPhase } from './localPhases.js';
+import { slopePull } from './scanFirstOrder.js';
 
 /** A phase over the whole spectrum: zero order at its centre, first order from end to end. */
 export interface PhaseFit {
@@ -9,42 +9,54 @@ export interface PhaseFit {
   readonly groups: number;
 }
 
+/** No group is believed better than this: line shapes are never known wholly. */
+const uLeastRad = (0.12 * Math.PI) / 180;
+/** How far the slope may reasonably lie from the best one of the scan. */
+const priorRad = Math.PI;
+
 /**
- * Lays a straight line through the local phases, which are known but for whole turns.
+ * Lays a straight line through the local phases, which are known but for whole turns: the branch by scanning the slope for the best
+ * agreement on the circle, then robust weighted least squares.
  *
- * The branch is found by scanning the first order for the best agreement on the circle, the smallest first order winning among
- * equals; then the line is refined by robust weighted least squares.
- *
- * @param phases      local phases with uncertainty
- * @param pointCount  n of the spectrum
- * @param firstRadMax largest first order to consider, radians from end to end
- * @returns zero and first order; both 0 without phases
- * @source Huber weights: Huber, Ann. Math. Stat. 1964, 35, 73
+ * @param phases     local phases with uncertainty
+ * @param pointCount n of the spectrum
+ * @param startRad   slope known so far
+ * @param rangeRad   least and greatest slope
+ * @returns zero and first order; zero order only for a single group
+ * @source Cauchy weights: Holland, Welsch, Commun. Stat. A 1977, 6, 813
  */
-export function fitPhase(phases: readonly LocalPhase[], pointCount: number, firstRadMax: number): PhaseFit {
-  if (phases.length === 0) return { zeroRad: 0, firstRad: 0, restRad: Number.NaN, groups: 0 };
-  const data = phases.map(({ index, phaseRad, u }) => ({ x: index / pointCount - 0.5, phaseRad, u: Math.max(u, 3e-3) }));
-  if (data.length === 1) return { zeroRad: wrap(data[0]!.phaseRad), firstRad: 0, restRad: data[0]!.u, groups: 1 };
-  const start = scan(data, firstRadMax);
-  return refine(data, start);
+export function fitPhase(
+  phases: readonly { readonly index: number; readonly phaseRad: number; readonly u: number }[],
+  pointCount: number,
+  startRad: number,
+  rangeRad: readonly [number, number],
+): PhaseFit {
+  const data = phases.map(({ index, phaseRad, u }) => ({ x: index / pointCount - 0.5, phaseRad, u: Math.hypot(u, uLeastRad) }));
+  if (data.length === 0) return { zeroRad: 0, firstRad: startRad, restRad: Number.NaN, groups: 0 };
+  return refine(data, scan(data, startRad, rangeRad));
 }
 
 type Datum = { readonly x: number; readonly phaseRad: number; readonly u: number };
 
-function scan(data: readonly Datum[], firstRadMax: number): { zeroRad: number; firstRad: number } {
+function scan(
+  data: readonly Datum[],
+  startRad: number,
+  [low, high]: readonly [number, number],
+): { zeroRad: number; firstRad: number } {
   const step = (2 * Math.PI) / 120;
-  const count = Math.ceil(firstRadMax / step);
-  const weights = data.map(({ u }) => 1 / (u * u + 0.02 ** 2));
+  const [first, last] = [Math.ceil((low - startRad) / step), Math.floor((high - startRad) / step)];
+  const pull = slopePull([low, high]);
+  const weights = data.map(({ u }) => 1 / (u + 0.03));
   const total = weights.reduce((sum, value) => sum + value, 0);
-  let best = { zeroRad: 0, firstRad: 0, score: Number.NEGATIVE_INFINITY };
-  for (let k = -count; k <= count; k += 1) {
-    const firstRad = k * step;
+  let best = { zeroRad: 0, firstRad: startRad, score: Number.NEGATIVE_INFINITY };
+  for (let k = first; k <= last; k += 1) {
+    const firstRad = startRad + k * step;
     let [re, im] = [0, 0];
     data.forEach(({ x, phaseRad }, index) => {
       re += weights[index]! * Math.cos(phaseRad - firstRad * x);
       im += weights[index]! * Math.sin(phaseRad - firstRad * x);
     });
-    const score = Math.hypot(re, im) / total - 4e-4 * Math.abs(k);
+    const score = Math.hypot(re, im) / total - pull * Math.abs(firstRad);
     if (score > best.score) best = { zeroRad: Math.atan2(im, re), firstRad, score };
   }
   return best;
@@ -53,29 +65,44 @@ function scan(data: readonly Datum[], firstRadMax: number): { zeroRad: number; f
 function refine(data: readonly Datum[], start: { zeroRad: number; firstRad: number }): PhaseFit {
   let { zeroRad, firstRad } = start;
   let restRad = 0;
-  for (let turn = 0; turn < 12; turn += 1) {
-    let [s, sx, sxx, sy, sxy, rest] = [0, 0, 0, 0, 0, 0];
-    for (const { x, phaseRad, u } of data) {
-      const residual = wrap(phaseRad - zeroRad - firstRad * x);
-      const weight = (1 / (u * u)) * Math.min(1, (2.5 * u) / Math.max(Math.abs(residual), 1e-12));
+  for (let turn = 0; turn < 40; turn += 1) {
+    const rests = data.map(({ x, phaseRad }) => wrap(phaseRad - zeroRad - firstRad * x));
+    // The scatter in units of the stated uncertainties: what the stated ones leave out widens all alike.
+    const scale = Math.max(
+      1,
+      1.5 * weightedMedian(rests.map((rest, index) => ({ value: Math.abs(rest) / data[index]!.u, weight: 1 / data[index]!.u }))),
+    );
+    const prior = 1 / priorRad ** 2;
+    let [s, sx, sxx, sy, sxy, rest2] = [0, 0, prior, 0, prior * (start.firstRad - firstRad), 0];
+    data.forEach(({ x, u }, index) => {
+      const rest = rests[index]!;
+      const weight = 1 / (u * u * scale * scale) / (1 + (rest / (2 * scale * u)) ** 2);
       s += weight;
       sx += weight * x;
       sxx += weight * x * x;
-      sy += weight * residual;
-      sxy += weight * x * residual;
-      rest += weight * residual * residual;
-    }
-    // A weak prior (one turn) keeps the slope finite when all groups lie close together.
-    const prior = 1 / (2 * Math.PI) ** 2;
-    const determinant = s * (sxx + prior) - sx * sx;
-    const dZero = ((sxx + prior) * sy - sx * sxy) / determinant;
-    const dFirst = (s * sxy - sx * sy) / determinant;
+      sy += weight * rest;
+      sxy += weight * x * rest;
+      rest2 += weight * rest * rest;
+    });
+    const determinant = s * sxx - sx * sx;
+    const [dZero, dFirst] = [(sxx * sy - sx * sxy) / determinant, (s * sxy - sx * sy) / determinant];
     zeroRad += dZero;
     firstRad += dFirst;
-    restRad = Math.sqrt(rest / s);
-    if (Math.abs(dZero) + Math.abs(dFirst) < 1e-6) break;
+    restRad = Math.sqrt(rest2 / s);
+    if (Math.abs(dZero) + Math.abs(dFirst) < 1e-7) break;
   }
   return { zeroRad: wrap(zeroRad), firstRad, restRad, groups: data.length };
+}
+
+function weightedMedian(values: { readonly value: number; readonly weight: number }[]): number {
+  const sorted = [...values].sort((a, b) => a.value - b.value);
+  const half = sorted.reduce((sum, { weight }) => sum + weight, 0) / 2;
+  let running = 0;
+  for (const { value, weight } of sorted) {
+    running += weight;
+    if (running >= half) return value;
+  }
+  return 0;
 }
 
 /** Into (-pi, pi]. */

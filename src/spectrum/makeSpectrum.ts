@@ -3,10 +3,11 @@ import { fail, ok, type Problem, type Result } from '../base/result.js';
 import type { Acquisition } from '../decode/acquisition.js';
 import type { Method } from '../method/method.js';
 import { chooseReference } from './chooseReference.js';
-import { complexFrom } from './complexFrom.js';
+import { complexFrom, type Raw } from './complexFrom.js';
 import { expectationsOf } from './expectations.js';
-import { findPeaks } from './findPeaks.js';
+import { findLines } from './findLines.js';
 import { flattenBaseline } from './flattenBaseline.js';
+import { lineTails } from './lineTails.js';
 import { measuredNoiseCorrelation } from './noiseCorrelationOf.js';
 import { phaseSpectrum } from './phaseSpectrum.js';
 import { type AxisHintPlace, type AxisPlace, placeAxis } from './placeAxis.js';
@@ -30,16 +31,17 @@ export function makeSpectrum(acquisition: Acquisition, method: Method): Result<S
   const observeMhz = acquisition.observeMhz!;
 
   const raw = complexFrom(acquisition, method.processing, method.input.onsetPoints);
-  const { peaks, noise: rawNoise } = findPeaks(raw.spectrum, 120, 8);
+  const found = findLines(raw, slopeRange(raw));
+  const { peaks } = found;
   if (peaks.length === 0)
     return fail(problem('no-signal', 'no line stands out of the noise by a factor of 8', 'Check tube, shim, lock and receiver.'));
 
-  const firstDegMax = acquisition.kind === 'fid' ? 400 : 1500;
-  const phased = phaseSpectrum(raw.spectrum, peaks.slice(0, 60), rawNoise, method.processing.phase, raw.isReal, firstDegMax);
-  const flat = flattenBaseline(phased.spectrum, peaks, method.processing.baseline === 'none');
+  const phased = phaseSpectrum(raw, found, method.processing.phase);
+  const isFlat = method.processing.baseline === 'none';
+  const flat = flattenBaseline(phased.spectrum.real, lineTails(raw, found), isFlat, raw.independentPoints);
 
   const expectations = expectationsOf(method, observeMhz);
-  const place = placeAxis(raw.spectrum, observeMhz, peaks, expectations, hintOf(acquisition, method));
+  const place = placeAxis(raw.analysis, observeMhz, peaks, expectations, hintOf(acquisition, method));
   const lost = requirePlace(place);
   if (lost) return fail(lost);
 
@@ -52,7 +54,10 @@ export function makeSpectrum(acquisition: Acquisition, method: Method): Result<S
   const steps: StepRecord[] = [
     ...raw.steps,
     phased.step,
-    { step: 'baseline', parameters: { how: method.processing.baseline, masked_share: flat.maskedShare, noise: flat.noise } },
+    {
+      step: 'baseline',
+      parameters: { how: method.processing.baseline, bends: flat.bends, masked_share: flat.maskedShare, noise: flat.noise },
+    },
     {
       step: 'axis',
       parameters: { centre_ppm: place.centrePpm, rising: place.isRising, score: place.score, runner_up: place.runnerUp },
@@ -91,6 +96,12 @@ export function makeSpectrum(acquisition: Acquisition, method: Method): Result<S
     ...qualityFlags(acquisition, spectrum, flat.maskedShare, method),
   ];
   return ok({ ...spectrum, flags });
+}
+
+/** Time zero lies at a point before or after where the transform took it: one turn from end to end for each point. */
+function slopeRange({ onsetPoints = 0, originRange = [-4, 4] }: Raw): readonly [number, number] {
+  const [low, high] = originRange;
+  return [2 * Math.PI * (onsetPoints - high), 2 * Math.PI * (onsetPoints - low)];
 }
 
 function problem(code: string, message: string, hint?: string): Problem {

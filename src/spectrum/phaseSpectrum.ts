@@ -1,9 +1,10 @@
 import type { Flag } from '../base/flag.js';
 import type { Processing } from '../method/method.js';
+import type { Raw } from './complexFrom.js';
 import type { ComplexSpectrum } from './complexSpectrum.js';
-import type { Peak } from './findPeaks.js';
-import { fitPhase, type PhaseFit, wrap } from './fitPhase.js';
-import { type LocalPhase, localPhases } from './localPhases.js';
+import type { FoundLines } from './findLines.js';
+import type { GroupFit } from './fitGroup.js';
+import { type PhaseFit, wrap } from './fitPhase.js';
 import { rotatePhase } from './rotatePhase.js';
 import type { StepRecord } from './spectrum.js';
 
@@ -19,31 +20,20 @@ export interface Phased {
 }
 
 /**
- * Phases a spectrum in both orders from the local phases of its groups of lines.
+ * Turns a spectrum in both orders by what its lines show.
  *
- * @param spectrum complex, not phased
- * @param peaks    maxima of the magnitude, strongest first
- * @param noise    rms of one quadrature
+ * @param raw      not phased; real-only input is left alone when in phase already
+ * @param found    lines, their local phases and the straight line through them
  * @param phase    automatic, none, or given angles
- * @param isReal   real-only input: left alone when in phase already
- * @param firstDegMax largest first order to consider
  * @returns the phased spectrum; flag `phase-uncertain` when the groups do not lie on a line
- * @source `localPhases`, `fitPhase`
+ * @source `findLines`
  */
-export function phaseSpectrum(
-  spectrum: ComplexSpectrum,
-  peaks: readonly Peak[],
-  noise: number,
-  phase: Processing['phase'],
-  isReal: boolean,
-  firstDegMax: number,
-): Phased {
+export function phaseSpectrum({ spectrum, isReal }: Raw, found: FoundLines, phase: Processing['phase']): Phased {
   if (phase === 'none') return done(spectrum, 0, 0, 'none', 0, []);
   if (typeof phase === 'object') return turned(spectrum, rad(phase.zeroDeg), rad(phase.firstDeg), 'given', 0, []);
-  const local = localPhases(spectrum, peaks, noise);
+  const { fit, local } = found;
   if (local.length === 0) return done(spectrum, 0, 0, 'automatic', 0, [uncertain('no line stands out enough to phase on')]);
   if (isReal && isInPhase(local)) return done(spectrum, 0, 0, 'left as it came, in phase', local.length, []);
-  const fit = fitPhase(local, spectrum.real.length, rad(firstDegMax));
   // A spectrum that was phased at the instrument is not turned again for a few degrees that its overlaps may well fake.
   if (isReal && Math.abs(fit.zeroRad) < inPhaseRad && Math.abs(fit.firstRad) < 8 * inPhaseRad) {
     return done(spectrum, 0, 0, 'left as it came, in phase', local.length, []);
@@ -61,7 +51,7 @@ export function phaseSpectrum(
 const rad = (angleDeg: number) => (angleDeg * Math.PI) / 180;
 const deg = (angleRad: number) => (angleRad * 180) / Math.PI;
 
-function isInPhase(local: readonly LocalPhase[]): boolean {
+function isInPhase(local: readonly GroupFit[]): boolean {
   const weights = local.map(({ u }) => 1 / (u * u + 1e-3));
   const total = weights.reduce((sum, value) => sum + value, 0);
   const rms = Math.sqrt(local.reduce((sum, { phaseRad }, index) => sum + weights[index]! * wrap(phaseRad) ** 2, 0) / total);
