@@ -53,6 +53,8 @@ export function candidatePatterns(peaks: readonly Peak[], listedHz: readonly num
   }
   const gaps = peaks.slice(1, 5).map((peak) => first - peak.shiftHz);
   const smalls = [...gaps, ...peaks.slice(-3, -1).map((peak) => peak.shiftHz - last), 0.8 * widthHz, 1.4 * widthHz];
+  // Where the smaller coupling does not show as a gap, the distance of the humps is the larger one.
+  for (const [a, b] of double) for (const part of [0.8, 1.2]) add([a, b], [spread / a, part * widthHz], middle);
   for (const [a, b] of double) for (const gap of smalls) add([a, b], [(spread - b * gap) / a, gap], middle);
   for (const smallest of [...gaps.slice(0, 2), 1.2 * widthHz]) {
     for (const next of gaps.slice(0, 3)) {

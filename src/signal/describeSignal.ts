@@ -10,7 +10,7 @@ import { rivalPattern } from './rivalPattern.js';
 import type { Target } from './signalTargets.js';
 import { strangeLines } from './strangeLines.js';
 import { sticksOf } from './tailsOf.js';
-import { type Evidence, verdictOf } from './verdictOf.js';
+import { type Evidence, strainMax, verdictOf } from './verdictOf.js';
 import type { Whitening } from './whiteningFilter.js';
 
 const presentFactor = 3.3;
@@ -32,6 +32,8 @@ export interface SignalContext {
   readonly home: number;
   /** Species of which some signal was found with its pattern. */
   readonly seenSpecies: ReadonlySet<string>;
+  /** Width of the lines of this spectrum: the middle of all sharp signals. */
+  readonly usualHz: number;
   /** Lines that nothing declared explains. */
   readonly unexplained: readonly Peak[];
 }
@@ -57,7 +59,15 @@ export function describeSignal(context: SignalContext, target: Target): Measured
   const shiftU = shiftFree < 0 ? undefined : Math.sqrt(fit.covarianceOf()[shiftIndex * fit.size + shiftIndex]!) / observeMhz;
   const doubt = signal.pattern.isBroad ? {} : doubtsOf(context, target, isPresent);
   const isExpected = context.seenSpecies.has(species.id) || species.signals.length === 1;
-  const judged = verdictOf(spectrum, { extra, target, area, isPresent, isExpected, ...doubt });
+  const judged = verdictOf(spectrum, {
+    extra,
+    target,
+    area,
+    isPresent,
+    isExpected,
+    strain: signal.pattern.isBroad ? 1 : strainOf(context, extra, target),
+    ...doubt,
+  });
   // Where another pattern stands, its area is what is there; the declared one only covers a part of it.
   const other = judged.verdict === 'differs' ? doubt.rival : undefined;
   const isAlone = extra.region.targets.length === 1;
@@ -100,14 +110,20 @@ function doubtsOf(context: SignalContext, target: Target, isPresent: boolean): P
   const home = context.plain[context.home]!;
   const isStrong = isPresent || context.extra[context.home]!.fit.areas.length > home.fit.areas.length;
   if (!isStrong) return {};
-  if (!hasStrangers(context, target) && misfitOf(home, target) < doubtfulMisfit) return {};
+  if (!hasStrangers(context, target) && misfitOf(home, target) < doubtfulMisfit && strainOf(context, home, target) < strainMax)
+    return {};
   const near = neighbourhood(context.spectrum, context.plain, home, target, context);
   const { all, strange } = strangeLines(near);
-  if (strange.length === 0 && misfitOf(near, target) < doubtfulMisfit) return {};
+  if (strange.length === 0 && misfitOf(near, target) < doubtfulMisfit && strainOf(context, home, target) < strainMax) return {};
   const rival = rivalPattern(near, all);
   const strangeArea = strange.reduce((sum, { area }) => sum + area, 0);
   const strangeShare = strangeArea / (strangeArea + Math.max(0, near.fit.areas[0]!));
-  return { near: { ...near, strangeShare }, ...(rival ? { rival } : {}) };
+  return { near: { ...near, strangeShare, strain: strainOf(context, home, target) }, ...(rival ? { rival } : {}) };
+}
+
+/** Fitted width over the width that the spectrum's lines have. */
+function strainOf({ usualHz }: SignalContext, { fit }: FittedRegion, target: Target): number {
+  return sticksOf(fit).find(({ key }) => key === target.key)!.widthHz / usualHz;
 }
 
 /** Whether lines that nothing explains stand where they could belong to the signal. */

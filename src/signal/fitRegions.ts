@@ -1,5 +1,6 @@
 import type { BinnedSpectrum } from './binSpectrum.js';
 import { buildRegionModel, type SharedShape } from './buildRegionModel.js';
+import { fitFromStarts } from './fitFromStarts.js';
 import { fitRegion } from './fitRegion.js';
 import type { Region } from './groupRegions.js';
 import type { Located } from './locateSignals.js';
@@ -45,7 +46,7 @@ export function fitRegions(
       if (before !== undefined && !differ(before.window, spectrum, outside)) continue;
       const window = regionWindow(spectrum, { from: region.from, to: region.to, whitening, ...shape, outside });
       const model = before?.fit ? restart(before.fit) : buildRegionModel(region.targets, located, shape, spectrum.observeMhz);
-      fitted[index] = { region, window, fit: fitRegion(window, model) };
+      fitted[index] = { region, window, fit: before ? fitRegion(window, model) : fitFromStarts(window, model) };
     }
   }
   return fitted.map((one) => one!);

@@ -51,8 +51,11 @@ export function learnShape(
   if (fits.length === 0) return { ...start, logWidthSigma: 0.3, phaseSigma: 0.05 };
   const plain = { ...start, widthHz: middleWidth(fits), logWidthSigma: 0.2, phaseSigma: 0.05 };
   const misfit = sharedMisfit(fits);
-  if (misfit < plainMisfit) return { ...plain, misfit };
-  return learnComponents(spectrum, fits, located, plain, whitening) ?? { ...plain, misfit };
+  // Where a spectrum is out of phase its lines say by how much; the fit may then lean further.
+  const phase = middle(fits.map(({ fit }) => fit.values[fit.model.terms[0]!.phase]!));
+  const leaning = misfit > 0 ? { ...plain, misfit, phase, phaseSigma: 0.1 } : plain;
+  if (misfit < plainMisfit) return leaning;
+  return learnComponents(spectrum, fits, located, leaning, whitening) ?? leaning;
 }
 
 /**

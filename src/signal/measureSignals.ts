@@ -18,6 +18,7 @@ import { measureRange } from './measureRange.js';
 import { measureSolvents } from './measureSolvents.js';
 import { misfitOf } from './misfitOf.js';
 import { signalTargets, type Target } from './signalTargets.js';
+import { sticksOf } from './tailsOf.js';
 import { unexplainedPeaks } from './unexplainedPeaks.js';
 import { whiteningFilter } from './whiteningFilter.js';
 
@@ -51,6 +52,7 @@ export function measureSignals(fine: Spectrum, method: Method): Measurement {
   const byKey = new Map<string, MeasuredSignal>();
   const residual = unexplainedPeaks(spectrum, explained, method, shape);
   const seenSpecies = speciesSeen(explained);
+  const usualHz = usualWidth(explained, shape.widthHz);
   explained.forEach((extra, home) => {
     for (const target of extra.region.targets) {
       if (target.key.startsWith(backgroundPrefix)) continue;
@@ -65,6 +67,7 @@ export function measureSignals(fine: Spectrum, method: Method): Measurement {
           home,
           seenSpecies,
           unexplained: residual.peaks,
+          usualHz,
         },
         target,
       );
@@ -88,6 +91,19 @@ export function measureSignals(fine: Spectrum, method: Method): Measurement {
 /** Whether a region holds nothing that the method declares. */
 function isBackground({ region }: FittedRegion): boolean {
   return region.targets.every(({ key }) => key.startsWith(backgroundPrefix));
+}
+
+/** Width of the lines: the middle of all sharp signals that stand clear of the noise; of fewer than three, the learned one. */
+function usualWidth(regions: readonly FittedRegion[], otherwiseHz: number): number {
+  const widths = regions.flatMap((region) =>
+    region.region.targets.flatMap((target, t) => {
+      const { area, u, u0 } = areaOf(region, t);
+      if (target.signal.pattern.isBroad || !isSignificant(area, u, u0)) return [];
+      return [sticksOf(region.fit).find(({ key }) => key === target.key)!.widthHz];
+    }),
+  );
+  widths.sort((a, b) => a - b);
+  return widths.length < 3 ? otherwiseHz : widths[Math.floor((widths.length - 1) / 2)]!;
 }
 
 /** Species of which at least one signal is there with its own pattern. */

@@ -56,7 +56,15 @@ export function neighbourhood(
     window.data,
     (value, i) => value - fit.level - fit.slopePerHz * slopeHz(window.data.length, i, window.stepHz),
   );
-  return { region: { targets: [target], from, to }, window, fit, target, widthHz, misfit, trace };
+  return {
+    region: { targets: [target], from, to },
+    window,
+    fit,
+    target,
+    widthHz,
+    misfit,
+    trace,
+  };
 }
 
 function slopeHz(points: number, index: number, stepHz: number): number {

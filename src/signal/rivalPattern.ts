@@ -24,6 +24,10 @@ export interface Rival {
 const triedMax = 8;
 const startsPerPattern = 2;
 const oddsMax = 1e12;
+/** Splittings that spread lines by less than this many widths are not seen as splittings. */
+const hiddenWidths = 1.3;
+/** Couplings closer than this many widths are told apart by nothing that a chemist would name. */
+const sameWidths = 0.6;
 
 /**
  * Finds the best other pattern for a signal: proposes patterns from the lines that stand there, fits the most promising ones in
@@ -51,6 +55,7 @@ export function rivalPattern(near: Neighbourhood, peaks: readonly Peak[]): Rival
     starts.set(letters, count + 1);
     const fit = fitRegion(near.window, withRival(near, candidate));
     const bic = criterion(fit);
+    if (isHidden(candidate, fit, widthHz)) continue;
     if (fit.areas[0]! > 0 && (best === undefined || bic < best.bic)) best = { candidate, fit, bic };
   }
   if (best === undefined) return undefined;
@@ -58,17 +63,38 @@ export function rivalPattern(near: Neighbourhood, peaks: readonly Peak[]): Rival
   const scale = Math.max(1, Math.min(best.fit.chiSquare, extra.chiSquare) / near.window.data.length);
   const rival = best.fit;
   const odds = (other: RegionFit) => Math.min(oddsMax, Math.exp((criterion(other, scale) - criterion(rival, scale)) / 2));
-  const { neighbours, couplingsHz } = best.candidate;
   const term = rival.model.terms[0]!;
+  const fittedHz = best.candidate.couplingsHz.map((j, k) => Math.abs(j + rival.values[term.couplings[k]!]!));
+  const { neighbours, couplingsHz } = merged(best.candidate.neighbours, fittedHz, widthHz);
   return {
     pattern: lettersOf(neighbours),
     neighbours,
-    couplingsHz: couplingsHz.map((j, k) => j + rival.values[term.couplings[k]!]!),
+    couplingsHz,
     shiftHz: rival.values[term.shift]!,
     fit: rival,
     oddsAgainstDeclared: odds(near.fit),
     oddsAgainstExtras: odds(extra),
   };
+}
+
+/** Couplings that the line width cannot tell apart are one: a triplet of doublets with equal couplings is a quartet. */
+function merged(neighbours: readonly number[], couplingsHz: readonly number[], widthHz: number) {
+  const parts = neighbours.map((n, k) => ({ n, j: couplingsHz[k]! })).sort((a, b) => b.j - a.j);
+  const kept: { n: number; j: number }[] = [];
+  for (const part of parts) {
+    const last = kept.at(-1);
+    if (last !== undefined && last.j - part.j < sameWidths * widthHz && last.n + part.n < splittingLetters.length) {
+      last.j = (last.j * last.n + part.j * part.n) / (last.n + part.n);
+      last.n += part.n;
+    } else kept.push({ ...part });
+  }
+  return { neighbours: kept.map(({ n }) => n), couplingsHz: kept.map(({ j }) => j) };
+}
+
+/** A splitting narrower than the lines only widens them: a long-range coupling or the shape of the line, no pattern. */
+function isHidden({ neighbours, couplingsHz }: CandidatePattern, fit: RegionFit, widthHz: number): boolean {
+  const indices = fit.model.terms[0]!.couplings;
+  return neighbours.some((n, k) => n * Math.abs(couplingsHz[k]! + fit.values[indices[k]!]!) < hiddenWidths * widthHz);
 }
 
 /** BIC with known noise, widened where even the best model does not reach it. */

@@ -22,8 +22,10 @@ const misfitMax = 0.2;
 /** Below this a better pattern is a detail: a doublet of doublets with nearly equal couplings listed as a triplet. */
 const detailMisfit = 0.05;
 const oddsMin = 1000;
-/** Couplings below this many line widths only widen the lines. */
-const hiddenCoupling = 1.2;
+/** Lines this much wider than the spectrum's own are not one line each. */
+export const strainMax = 1.6;
+/** From here on the declared pattern is refused even when no other one could be named. */
+const tornMax = 2.3;
 /** Share left over above which the signal is no longer by itself. */
 const crowdedLeftOver = 0.25;
 
@@ -35,10 +37,12 @@ export interface Evidence {
   readonly area: number;
   readonly isPresent: boolean;
   /** The signal by itself with its declared pattern alone, and the best other pattern, when there was doubt. */
-  readonly near?: Neighbourhood & { readonly strangeShare: number };
+  readonly near?: Neighbourhood & { readonly strangeShare: number; readonly strain: number };
   readonly rival?: Rival;
   /** Whether other signals of the species are there: then this one should be. */
   readonly isExpected: boolean;
+  /** Fitted width over the width of the spectrum's other lines. */
+  readonly strain: number;
 }
 
 /**
@@ -62,6 +66,14 @@ export function verdictOf(spectrum: Spectrum, evidence: Evidence): Judged {
   if (misfitOf(extra, target) > misfitMax) {
     return { verdict: 'differs', ...found, words: `the lines are not those of a ${declared}${rest}` };
   }
+  if (evidence.strain > tornMax) {
+    const times = evidence.strain.toFixed(1);
+    return {
+      verdict: 'differs',
+      ...found,
+      words: `lines ${times} times as wide as the others, not those of a ${declared}${rest}`,
+    };
+  }
   const unknown = (leftOver?.share ?? 0) > crowdedLeftOver ? 'lines that nothing explains' : undefined;
   const crowd = crowdedBy(extra, target, area) ?? unknown;
   const verdict: Verdict = crowd !== undefined ? 'crowded' : 'matches';
@@ -76,19 +88,14 @@ export function verdictOf(spectrum: Spectrum, evidence: Evidence): Judged {
  */
 function isProven({ near, target, isPresent, isExpected }: Evidence, rival: Rival): boolean {
   if (near === undefined || rival.oddsAgainstDeclared < oddsMin) return false;
-  if (isRefinement(near, rival)) return false;
-  if (misfitOf(near, target) < detailMisfit && near.strangeShare < detailMisfit) return false;
+  const misfit = misfitOf(near, target);
+  const isStrained = near.strain > strainMax;
+  if (!isStrained && misfit < detailMisfit && near.strangeShare < detailMisfit) return false;
+  // What fits no better to the eye is no proof, whatever the odds of two wrong models say.
+  const rivalMisfit = misfitOf({ fit: rival.fit, window: near.window }, target);
+  if (rivalMisfit > misfitMax) return false;
+  if (!isStrained && near.strangeShare < detailMisfit && rivalMisfit > Math.max(0.6 * misfit, 0.03)) return false;
   return isPresent ? rival.oddsAgainstExtras > oddsMin : isExpected;
-}
-
-/** The declared pattern with one more coupling that the line width hides: a long-range coupling, or the shape of the line. */
-function isRefinement({ target, widthHz }: Neighbourhood, rival: Rival): boolean {
-  const declared = target.signal.pattern.splittings.map(({ neighbours }) => neighbours);
-  if (rival.neighbours.length !== declared.length + 1) return false;
-  return rival.couplingsHz.some((hertz, k) => {
-    const rest = rival.neighbours.filter((_, other) => other !== k);
-    return hertz < hiddenCoupling * widthHz && rest.every((n, other) => n === declared[other]);
-  });
 }
 
 function differing(declared: string, rival: Rival): Judged {
