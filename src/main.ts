@@ -58,8 +58,6 @@ function withoutCommand(argv: readonly string[]): number {
 }
 
 async function runCommand(command: import('yargs').CommandModule, argv: readonly string[]): Promise<number> {
-  let usageError: string | undefined;
-  let fault: unknown;
   process.exitCode = exitCodes.done;
   const parser = yargs(argv as string[])
     .scriptName('kinetrail')
@@ -72,14 +70,20 @@ async function runCommand(command: import('yargs').CommandModule, argv: readonly
     .exitProcess(false)
     .showHelpOnFail(false)
     .fail((message, error) => {
-      if (error) fault = error;
-      else usageError = message;
+      // Without a throw the command would run all the same, with what it needs missing.
+      throw error ?? new UsageError(message);
     });
-  await parser.parseAsync();
-  if (fault !== undefined) throw fault;
-  if (usageError !== undefined) {
-    process.stderr.write(`error: ${escapeForTerminal(usageError)}\n  kinetrail ${String(argv[0])} --help shows the usage.\n`);
+  try {
+    await parser.parseAsync();
+  } catch (cause) {
+    if (!(cause instanceof UsageError)) throw cause;
+    process.stderr.write(`error: ${escapeForTerminal(cause.message)}\n  kinetrail ${String(argv[0])} --help shows the usage.\n`);
     return exitCodes.usage;
   }
   return Number(process.exitCode ?? exitCodes.done);
+}
+
+/** Wrong usage, as told by the argument parser. */
+class UsageError extends Error {
+  override readonly name = 'UsageError';
 }

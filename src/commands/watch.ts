@@ -144,6 +144,7 @@ function settingsOf(args: WatchArguments, share: string, site: FoundSite | undef
     pollMs: pollS * 1000,
     longestWaitMs: args.once ? 0 : Math.max(longestWaitMs, 3000 * settleS),
     ...(args.method !== undefined ? { methodPath: resolve(args.method) } : {}),
+    ...(site?.file.silentAfterMin !== undefined ? { silentAfterMs: site.file.silentAfterMin * 60_000 } : {}),
     ...(site !== undefined ? { site } : {}),
   };
 }

@@ -1,6 +1,7 @@
 import { pathText } from '../record/bytePath.js';
+import { runFolderOf } from '../watch/runFolder.js';
 import { runNameOf } from '../watch/takeInRun.js';
-import { type PassOutcome, runFolderOf } from '../watch/watchPass.js';
+import type { PassOutcome } from '../watch/watchPass.js';
 import type { WatchEvent, WatchSession } from '../watch/watchTypes.js';
 import { problemText } from './printProblem.js';
 import { escapeForTerminal } from './terminalText.js';

@@ -19,6 +19,7 @@ export interface WatchParts {
   readonly measurer: Measurer;
   readonly renderer: Renderer;
   readonly onEvent: (event: WatchEvent) => void;
+  readonly tell?: WatchSession['tell'];
   readonly signal?: AbortSignal;
 }
 
@@ -53,12 +54,15 @@ export async function openWatch(parts: WatchParts): Promise<Result<OpenWatch>> {
 
 function begin(parts: WatchParts, lock: RecordLock): OpenWatch {
   const { settings } = parts;
+  const { tell, ...rest } = parts;
   const session: WatchSession = {
-    ...parts,
+    ...rest,
+    ...(tell !== undefined ? { tell } : {}),
     settling: makeSettling({ settleMs: settings.settleMs, trustsModifiedTime: settings.isOnce }),
     runs: new Map(),
     unfinished: new Map(),
     renderedMs: new Map(),
+    takenMs: new Map(),
     series: new Map(),
     skippedTold: new Set(),
     isLastPass: false,

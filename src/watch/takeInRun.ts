@@ -1,6 +1,6 @@
 import { basename } from 'node:path';
 import { ok, type Problem, type Result } from '../base/result.js';
-import { joinPath, nameText } from '../record/bytePath.js';
+import { nameText } from '../record/bytePath.js';
 import { type HeldRecord, holdRecord } from '../record/runRecord.js';
 import { measureAgain } from './measureAgain.js';
 import { noteAbsences } from './noteAbsences.js';
@@ -8,6 +8,7 @@ import { planRun, type RunPlan } from './planRun.js';
 import { type RunConfig, readConfig } from './readConfig.js';
 import { recordConfig } from './recordConfig.js';
 import { isRenderDue, renderRun } from './renderRun.js';
+import { runFolderOf } from './runFolder.js';
 import { type RunMemory, recallRun, reflect } from './runMemory.js';
 import type { RunListing } from './shareListing.js';
 import { takeFiles } from './takeFiles.js';
@@ -45,7 +46,7 @@ export function runNameOf(session: WatchSession, listing: RunListing): string {
 export async function takeInRun(session: WatchSession, listing: RunListing): Promise<RunOutcome> {
   const { context, settings } = session;
   const run = runNameOf(session, listing);
-  const folder = joinPath(settings.outputFolder, ...listing.names);
+  const folder = runFolderOf(session, listing);
   const done = (problems: readonly Problem[], more: Partial<RunOutcome> = {}): RunOutcome => ({
     run,
     taken: 0,

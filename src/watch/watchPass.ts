@@ -1,10 +1,10 @@
 import { fail, ok, type Problem, type Result } from '../base/result.js';
-import { joinPath, nameText } from '../record/bytePath.js';
 import { settleKey } from './planRun.js';
 import { hasRecordedRuns } from './recordedRuns.js';
 import { renderIndex } from './renderIndexPage.js';
 import { type RunListing, type ShareListing, shareProblem } from './shareListing.js';
 import { type RunOutcome, takeInRun } from './takeInRun.js';
+import { tellNews } from './tellNews.js';
 import type { WatchSession } from './watchTypes.js';
 
 export interface PassOutcome {
@@ -31,6 +31,7 @@ export async function watchPass(session: WatchSession): Promise<Result<PassOutco
     if (session.signal?.aborted) break;
     const outcome = await takeInRun(session, run);
     outcomes.push(outcome);
+    if (!session.signal?.aborted) await tellNews(session, run, outcome);
     if (outcome.problems.some(({ code }) => code === 'disk-full')) break;
   }
   const indexed = session.signal?.aborted ? ok(undefined) : await renderIndex(session, listing);
@@ -64,12 +65,4 @@ function announceSkipped(session: WatchSession, listing: ShareListing): void {
     session.skippedTold.add(path);
     session.onEvent({ kind: 'skipped', file: path, message: `skipped: ${why}` });
   }
-}
-
-export function runFolderOf(session: WatchSession, listing: RunListing) {
-  return joinPath(session.settings.outputFolder, ...listing.names);
-}
-
-export function runTextOf(listing: RunListing): string {
-  return listing.names.map(nameText).join('/');
 }

@@ -34,6 +34,7 @@ export async function watchShare(session: WatchSession, hooks: WatchHooks = {}):
     const space = await readSpace(session.context.port, session.settings.outputFolder);
     if (space.ok && space.value.stop !== undefined) {
       tellProblem(session, turn, 'space', space.value.stop);
+      await session.tell?.({ kind: 'trouble', code: 'disk-full', message: space.value.stop.message });
       await clock.sleep(session.settings.pollMs, session.signal);
       continue;
     }
@@ -63,6 +64,7 @@ async function onAway(session: WatchSession, turn: Turn, problem: Problem): Prom
     session.onEvent({ kind: 'share-away', message: problem.message, problem });
   }
   turn.failures += 1;
+  await session.tell?.({ kind: 'trouble', code: problem.code, message: problem.message });
   const backOffMs = Math.min(backOffMaxMs, session.settings.pollMs * 2 ** Math.min(turn.failures - 1, 10));
   await clock.sleep(backOffMs, session.signal);
 }

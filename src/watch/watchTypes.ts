@@ -8,6 +8,7 @@ import type { Series } from '../series/series.js';
 import type { RunMemory } from './runMemory.js';
 import type { Settling } from './settling.js';
 import type { ShareReader } from './shareReader.js';
+import type { WatchNews } from './watchNews.js';
 
 /** One thing that happened, for whoever looks on. Text from files is not yet escaped. */
 export interface WatchEvent {
@@ -44,6 +45,8 @@ export interface WatchSettings {
   readonly longestWaitMs: number;
   /** Default method: its path. */
   readonly methodPath?: string;
+  /** A run that is not finished is silent when no time point came for this long. */
+  readonly silentAfterMs?: number;
   readonly site?: { readonly path: string; readonly file: SiteFile };
 }
 
@@ -67,6 +70,10 @@ export interface WatchSession {
   /** Set in the last turn of a single pass: what still changes is set down as incomplete. */
   isLastPass: boolean;
   readonly onEvent: (event: WatchEvent) => void;
+  /** Tells people and machines; called while no record is held. */
+  readonly tell?: (news: WatchNews) => Promise<void>;
+  /** When each run last took in a time point, by the monotonic clock. */
+  readonly takenMs: Map<string, number>;
   /** Given when the watch should end: the current append is finished, nothing new is begun. */
   readonly signal?: AbortSignal;
 }

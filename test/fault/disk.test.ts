@@ -30,6 +30,7 @@ async function expectWhole(world: World, expected: Record<string, string>, what:
     ledgerOf(world)
       .filter(({ kind }) => kind === 'input')
       .map(({ file }) => file);
+  expect(kept(), `${what}: acknowledged, and not there`).toEqual(expect.arrayContaining(acknowledged));
   const again = await pass(world);
   expect(again.ok ? again.value.problems : [again.problem], what).toEqual([]);
   expect(kept(), what).toEqual(expect.arrayContaining(acknowledged));

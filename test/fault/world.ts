@@ -238,6 +238,6 @@ export function ledgerOf(world: World, run = 'BX-0417'): Record<string, unknown>
   return bytes
     .toString('utf8')
     .split('\n')
-    .filter((line) => line !== '')
+    .slice(0, -1)
     .map((line) => JSON.parse(line.slice(0, line.lastIndexOf('\t'))) as Record<string, unknown>);
 }
