@@ -9,7 +9,6 @@ import type { Target } from './signalTargets.js';
 export const backgroundPrefix = '(background) ';
 
 const singlet: Pattern = { text: 's', splittings: [], isBroad: false, isMultiplet: false };
-const broadSinglet: Pattern = { ...singlet, text: 'br s', isBroad: true };
 const withinPpm = 0.05;
 /** Water moves with temperature, acid and concentration (common practice). */
 const waterWithinPpm = 0.12;
@@ -39,7 +38,7 @@ export function backgroundTargets(method: Method, observeMhz: number): Target[] 
     add(`solvent ${shiftPpm}`, shiftPpm, singlet, method.solvent === 'D2O' ? waterWithinPpm : withinPpm, deuterons, couplingHz);
   }
   const water = solvent?.waterPpm;
-  if (water !== undefined && method.solvent !== 'D2O') add('water', water, broadSinglet, waterWithinPpm);
+  if (water !== undefined && method.solvent !== 'D2O') add('water', water, singlet, waterWithinPpm);
   return targets.filter((target) => Math.abs(target.signal.shiftPpm * observeMhz) < Number.POSITIVE_INFINITY);
 }
 
