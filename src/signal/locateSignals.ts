@@ -15,6 +15,8 @@ const gainMin = 30;
 /** Power of the lines under a misfitting pattern, in units of the noise, from which something is surely there. */
 const powerMin = 150;
 const kernelWidths = 4;
+/** Most shifts lie within this share of their search window (common practice: 0.02 of 0.05 ppm after referencing). */
+const usualShare = 0.4;
 
 /**
  * Finds the place of each declared pattern inside its search window: lines are weighed by a matched filter, and a place counts
@@ -37,7 +39,7 @@ export function locateSignals(spectrum: Spectrum, targets: readonly Target[], wi
     const open = new Set(group);
     while (open.size > 0) {
       const candidates = [...open].map((target) => ({ target, place: bestPlace(spectrum, left, target, widthHz) }));
-      candidates.sort((a, b) => b.place.gain - a.place.gain || (a.target.key < b.target.key ? -1 : 1));
+      candidates.sort((a, b) => b.place.score - a.place.score || (a.target.key < b.target.key ? -1 : 1));
       const { target, place } = candidates[0]!;
       open.delete(target);
       // Strong lines that the pattern does not fit are placed too: the verdict will say that they differ.
@@ -62,6 +64,8 @@ interface Place {
   readonly area: number;
   /** Gain without the misfit taken off. */
   readonly power: number;
+  /** Gain, less for a place far from where the signal is listed: of two signals that could claim a line, the nearer one does. */
+  readonly score: number;
 }
 
 function bestPlace(spectrum: Spectrum, left: Float64Array, target: Target, widthHz: number): Place {
@@ -76,12 +80,12 @@ function bestPlace(spectrum: Spectrum, left: Float64Array, target: Target, width
   const low = centre - reach + target.spanHz[0];
   const from = Math.max(0, Math.floor((firstHz - high) / stepHz) - 1);
   const to = Math.min(left.length, Math.ceil((firstHz - low) / stepHz) + 2);
-  const none = { shiftHz: centre, gain: 0, area: 0, power: 0 };
+  const none = { shiftHz: centre, gain: 0, area: 0, power: 0, score: 0 };
   if (to - from < 3) return none;
   const { filtered, energy } = matched(left, from, to, width, stepHz);
   const expected = expectedResponses(lines, width, stepHz);
   const shares = expected.reduce((sum, value) => sum + value * value, 0);
-  let best: Place & { score: number } = { ...none, score: 0 };
+  let best: Place = none;
   let strongest: Place = none;
   const step = Math.max(1, Math.floor(width / (5 * stepHz)));
   const start = Math.max(0, Math.ceil((firstHz - (centre + reach)) / stepHz));
@@ -100,10 +104,11 @@ function bestPlace(spectrum: Spectrum, left: Float64Array, target: Target, width
     }
     const power = (area * area * shares * energy) / (noise * noise);
     const gain = power - (misfit * energy) / (noise * noise);
-    const off = (shiftHz - centre) / reach;
+    const off = (shiftHz - centre) / (signal.moves ? reach : usualShare * reach);
     const score = gain * Math.exp(-off * off);
     if (score > best.score) best = { shiftHz, gain, area, score, power };
-    if (power * Math.exp(-off * off) > strongest.power) strongest = { shiftHz, gain, area, power: power * Math.exp(-off * off) };
+    if (power * Math.exp(-off * off) > strongest.power)
+      strongest = { shiftHz, gain, area, power: power * Math.exp(-off * off), score: 0 };
   }
   return best.score > 0 ? best : strongest;
 }
