@@ -1,4 +1,4 @@
-import { formatElapsed, formatPercent, formatU, formatValue } from './formatNumber.js';
+import { formatElapsed, formatTarget, formatU, formatValue } from './formatNumber.js';
 import type { ReportInput } from './reportInput.js';
 import type { Highlight } from './reportModel.js';
 
@@ -38,7 +38,7 @@ export function deriveHighlights({ series, method }: ReportInput): Highlight[] {
 
 function targetHighlight({ states, forecast }: ReportInput['series'], target: number | undefined): Highlight | undefined {
   if (target === undefined) return undefined;
-  const label = `Target ${formatPercent(target, undefined)}`;
+  const label = `Target ${formatTarget(target)}`;
   if (states.some(({ state }) => state === 'target-reached'))
     return { label, value: 'reached', detail: 'lower 95 % bound above the target', tone: 'good' };
   if (states.some(({ state }) => state === 'stalled'))

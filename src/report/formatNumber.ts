@@ -35,6 +35,11 @@ export function formatPercent(value: number | undefined, u: number | undefined):
   return u !== undefined && u > 0 ? `${text} % (u ${formatU(100 * u)} %)` : `${text} %`;
 }
 
+/** A target or limit as its author wrote it, in per cent: `98 %`. */
+export function formatTarget(share: number): string {
+  return `${minus(String(Number((100 * share).toPrecision(12))))} %`;
+}
+
 /** A number without an uncertainty, to a count of significant figures. */
 export function significant(value: number, figures: number): string {
   if (!Number.isFinite(value)) return 'not determined';

@@ -1,5 +1,5 @@
 import type { Series } from '../series/series.js';
-import { formatElapsed, formatPercent, formatTime } from './formatNumber.js';
+import { formatElapsed, formatPercent, formatTarget, formatTime } from './formatNumber.js';
 
 /** One run on the page of all runs. */
 export interface IndexCard {
@@ -77,7 +77,7 @@ function stateOf(
   if (forecast?.elapsedS !== undefined && forecast.lowS !== undefined && forecast.highS !== undefined && target !== undefined) {
     const zero = Date.parse(first.acquired) - 1000 * first.elapsedS;
     const at = (seconds: number) => new Date(zero + 1000 * seconds).toISOString().slice(11, 16);
-    const detail = `${formatPercent(target, undefined)} expected at ${at(forecast.elapsedS)} UTC (${at(forecast.lowS)} to ${at(forecast.highS)})`;
+    const detail = `${formatTarget(target)} expected at ${at(forecast.elapsedS)} UTC (${at(forecast.lowS)} to ${at(forecast.highS)})`;
     return { word: 'Running:', detail, tone: 'run', isLive };
   }
   return { word: 'Running', detail: forecast && target !== undefined ? `; ${forecast.words}` : '', tone: 'run', isLive };

@@ -1,9 +1,11 @@
-import SVGtoPDF from 'svg-to-pdfkit';
-import { visible } from './escapeMarkup.js';
+import { drawSvg } from './drawSvg.js';
+import { pdfFonts } from './pdfFonts.js';
 import { PdfTable } from './pdfTable.js';
+import { pdfText } from './pdfText.js';
 import type { Block } from './reportModel.js';
 
 type Document = PDFKit.PDFDocument;
+type Figure = Extract<Block, { kind: 'figure' }>;
 
 const ink = '#1f2328';
 const soft = '#555b61';
@@ -47,12 +49,12 @@ export class PdfPage {
         .font(font)
         .fontSize(points)
         .fillColor(color)
-        .text(visible(text), this.left, this.document.y, { width: this.width, ...options });
+        .text(pdfText(this.document, text), this.left, this.document.y, { width: this.width, ...options });
     });
   }
 
   kicker(text: string): void {
-    this.paragraph('P', text, 'regular', size.body, soft);
+    this.paragraph('P', text, pdfFonts.regular, size.body, soft);
   }
 
   heading(level: 1 | 2, text: string): void {
@@ -60,7 +62,7 @@ export class PdfPage {
       this.need(110);
       this.document.moveDown(1.1);
     }
-    this.paragraph(`H${level}`, text, 'bold', level === 1 ? size.h1 : size.h2, ink);
+    this.paragraph(`H${level}`, text, pdfFonts.bold, level === 1 ? size.h1 : size.h2, ink);
     this.document.moveDown(0.4);
   }
 
@@ -71,10 +73,13 @@ export class PdfPage {
       this.need(30);
       this.tagged('P', () => {
         this.document
-          .font(index === 0 ? 'bold' : 'regular')
+          .font(index === 0 ? pdfFonts.bold : pdfFonts.regular)
           .fontSize(index === 0 ? size.lead : size.body)
           .fillColor(ink);
-        this.document.text(visible(sentence), this.left + 12, this.document.y, { width: this.width - 12, paragraphGap: 3 });
+        this.document.text(pdfText(this.document, sentence), this.left + 12, this.document.y, {
+          width: this.width - 12,
+          paragraphGap: 3,
+        });
       });
     });
     if (this.document.y > top) {
@@ -95,37 +100,47 @@ export class PdfPage {
       ],
       rows: facts.map(([label, value]) => [label, value]),
     };
-    new PdfTable(this.document, this.left, this.width).draw(table, size.body, false);
+    new PdfTable(this.document, this.left, this.width, size.body).draw(table, false);
     this.document.moveDown(0.5);
   }
 
+  /** Figures that stand side by side are gathered into rows; everything else stands alone. */
   blocks(blocks: readonly Block[]): void {
-    let pending: Extract<Block, { kind: 'figure' }> | undefined;
-    for (const block of blocks) {
-      if (block.kind === 'figure' && block.half) {
-        if (pending) {
-          this.pair(pending, block);
-          pending = undefined;
-        } else pending = block;
-        continue;
+    let row: Figure[] = [];
+    const flush = () => {
+      if (row.length > 0) this.figureRow(row, row[0]!.perRow!);
+      row = [];
+    };
+    blocks.forEach((block, index) => {
+      if (block.kind === 'figure' && block.perRow !== undefined) {
+        if (row.length > 0 && row[0]!.perRow !== block.perRow) flush();
+        row.push(block);
+        if (row.length === block.perRow) flush();
+        return;
       }
-      if (pending) this.pair(pending);
-      pending = undefined;
-      this.block(block);
-    }
-    if (pending) this.pair(pending);
+      flush();
+      this.block(block, blocks[index + 1]);
+    });
+    flush();
   }
 
-  private block(block: Block): void {
+  private block(block: Block, next: Block | undefined): void {
     switch (block.kind) {
+      case 'subheading':
+        // A heading stays with what it heads: the row of figures below it is the tallest.
+        this.need(next?.kind === 'figure' ? 270 : 60);
+        this.document.moveDown(0.6);
+        this.paragraph('H3', block.text, pdfFonts.bold, 10, ink);
+        this.document.moveDown(0.3);
+        return;
       case 'text':
         this.need(26);
-        this.paragraph('P', block.text, 'regular', size.body, block.tone === 'note' ? soft : ink, { paragraphGap: 4 });
+        this.paragraph('P', block.text, pdfFonts.regular, size.body, block.tone === 'note' ? soft : ink, { paragraphGap: 4 });
         return;
       case 'list':
         for (const item of block.items) {
           this.need(20);
-          this.paragraph('P', `\u2022 ${item}`, 'regular', size.body, ink, { paragraphGap: 2 });
+          this.paragraph('P', `\u2022 ${item}`, pdfFonts.regular, size.body, ink, { paragraphGap: 2 });
         }
         this.document.moveDown(0.3);
         return;
@@ -135,13 +150,13 @@ export class PdfPage {
       case 'code':
         for (const line of block.text.split('\n')) {
           this.need(12);
-          this.paragraph('P', line === '' ? ' ' : line, 'mono', 6.8, ink);
+          this.paragraph('P', line === '' ? ' ' : line, pdfFonts.mono, 6.8, ink);
         }
         this.document.moveDown(0.5);
         return;
       case 'table':
         this.need(60);
-        new PdfTable(this.document, this.left, this.width).draw(block, block.small ? size.small : size.body, true);
+        new PdfTable(this.document, this.left, this.width, block.small ? size.small : size.body).draw(block, true);
         this.document.moveDown(0.7);
         return;
       case 'figure':
@@ -149,52 +164,53 @@ export class PdfPage {
     }
   }
 
-  private figure(block: Extract<Block, { kind: 'figure' }>): void {
+  private figure(block: Figure): void {
     const height = (block.heightPx * this.width) / block.widthPx;
     this.need(height + 34);
-    this.drawing(block, this.left, this.document.y, this.width, height);
+    this.drawing(block, this.left, this.document.y, this.width);
     this.document.y += height + 2;
-    this.paragraph('Caption', `${block.title}. ${block.description}`, 'regular', size.small, soft, { paragraphGap: 6 });
+    this.paragraph('Caption', `${block.title}. ${block.description}`, pdfFonts.regular, size.small, soft, { paragraphGap: 6 });
   }
 
-  /** Two half-width figures side by side. */
-  private pair(one: Extract<Block, { kind: 'figure' }>, other?: Extract<Block, { kind: 'figure' }>): void {
-    const width = (this.width - 14) / 2;
-    const figures = other ? [one, other] : [one];
+  private figureRow(figures: readonly Figure[], perRow: number): void {
+    const gap = 14;
+    const width = (this.width - gap * (perRow - 1)) / perRow;
     const heights = figures.map((figure) => (figure.heightPx * width) / figure.widthPx);
     const captions = figures.map((figure) =>
       this.document
-        .font('regular')
+        .font(pdfFonts.regular)
         .fontSize(size.small)
-        .heightOfString(visible(`${figure.title}. ${figure.description}`), { width }),
+        .heightOfString(pdfText(this.document, captionOf(figure)), { width }),
     );
-    const total = Math.max(...heights.map((height, index) => height + captions[index]! + 10));
+    const total = Math.max(...heights.map((height, index) => height + captions[index]! + 12));
     this.need(total);
     const top = this.document.y;
     figures.forEach((figure, index) => {
-      const left = this.left + index * (width + 14);
-      this.drawing(figure, left, top, width, heights[index]!);
+      const left = this.left + index * (width + gap);
+      this.drawing(figure, left, top, width);
       this.tagged('Caption', () => {
         this.document
-          .font('regular')
+          .font(pdfFonts.regular)
           .fontSize(size.small)
           .fillColor(soft)
-          .text(visible(`${figure.title}. ${figure.description}`), left, top + heights[index]! + 2, { width });
+          .text(pdfText(this.document, captionOf(figure)), left, top + heights[index]! + 2, { width });
       });
     });
+    this.document.x = this.left;
     this.document.y = top + total;
   }
 
-  private drawing(block: Extract<Block, { kind: 'figure' }>, left: number, top: number, width: number, height: number): void {
+  private drawing(block: Figure, left: number, top: number, width: number): void {
     this.tagged(
       'Figure',
       () => {
-        this.document.save();
-        const fontCallback = () => 'regular';
-        SVGtoPDF(this.document, block.svg, left, top, { width, height, assumePt: true, fontCallback });
-        this.document.restore();
+        drawSvg(this.document, block.svg, { left, top, scale: width / block.widthPx }, pdfFonts.regular);
       },
-      visible(`${block.title}. ${block.description}`),
+      captionOf(block),
     );
   }
+}
+
+function captionOf({ title, description }: Figure): string {
+  return `${title}. ${description}`;
 }

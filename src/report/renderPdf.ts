@@ -1,11 +1,9 @@
-import { createRequire } from 'node:module';
 import PDFDocument from 'pdfkit';
 import { visible } from './escapeMarkup.js';
 import { formatTime } from './formatNumber.js';
+import { pdfFonts } from './pdfFonts.js';
 import { PdfPage } from './pdfPage.js';
 import type { ReportModel } from './reportModel.js';
-
-const fonts = fontFiles();
 
 /**
  * Draws the model as PDF/A-3b: fonts embedded, tagged, `series.json` and `ledger.jsonl` attached, bytes that repeat.
@@ -27,7 +25,7 @@ export async function renderPdf(
     tagged: true,
     lang: 'en-GB',
     displayTitle: true,
-    font: fonts.regular,
+    font: pdfFonts.regular,
     info: {
       Title: visible(model.title),
       Author: `kinetrail ${model.program}`,
@@ -37,9 +35,6 @@ export async function renderPdf(
     },
   } as unknown as PDFKit.PDFDocumentOptions);
   const bytes = collect(document);
-  document.registerFont('regular', fonts.regular);
-  document.registerFont('bold', fonts.bold);
-  document.registerFont('mono', fonts.mono);
   attach(document, 'series.json', attachments.seriesJson, 'application/json', created);
   attach(document, 'ledger.jsonl', attachments.ledgerText, 'application/jsonl', created);
 
@@ -67,7 +62,7 @@ function drawHeaders(document: PDFKit.PDFDocument, model: ReportModel): void {
     const bottom = document.page.margins.bottom;
     document.page.margins.bottom = 0;
     document.markContent('Artifact', { type: 'Pagination' });
-    document.font('regular').fontSize(7.5).fillColor('#444444');
+    document.font(pdfFonts.regular).fontSize(7.5).fillColor('#444444');
     const line = visible(
       `Batch ${model.batch}  |  report ${model.reportId}, ${model.isFinal ? 'final' : 'interim'}  |  record of ${formatTime(model.createdUtc)}  |  kinetrail ${model.program}`,
     );
@@ -103,10 +98,4 @@ function collect(document: PDFKit.PDFDocument): Promise<Uint8Array> {
     document.on('end', () => resolve(new Uint8Array(Buffer.concat(chunks))));
     document.on('error', reject);
   });
-}
-
-function fontFiles(): { regular: string; bold: string; mono: string } {
-  const require = createRequire(import.meta.url);
-  const at = (name: string) => require.resolve(`dejavu-fonts-ttf/ttf/${name}.ttf`);
-  return { regular: at('DejaVuSans'), bold: at('DejaVuSans-Bold'), mono: at('DejaVuSansMono') };
 }

@@ -8,6 +8,7 @@ export interface Column {
 
 export type Block =
   | { readonly kind: 'text'; readonly text: string; readonly tone?: 'lead' | 'note' }
+  | { readonly kind: 'subheading'; readonly text: string }
   | { readonly kind: 'list'; readonly items: readonly string[] }
   | { readonly kind: 'facts'; readonly facts: readonly (readonly [label: string, value: string])[] }
   | {
@@ -24,7 +25,8 @@ export type Block =
       readonly svg: string;
       readonly widthPx: number;
       readonly heightPx: number;
-      readonly half?: boolean;
+      /** How many stand side by side; 1 when absent. */
+      readonly perRow?: 2 | 3;
       /** The numbers behind the drawing, for those who cannot see it; only where no other table gives them. */
       readonly numbers?: Extract<Block, { kind: 'table' }>;
     }

@@ -1,5 +1,5 @@
 import { judgeLimits } from '../amount/judgeLimits.js';
-import { formatElapsed, formatPercent, formatQuantity } from './formatNumber.js';
+import { formatElapsed, formatPercent, formatQuantity, formatTarget, formatU } from './formatNumber.js';
 import type { ReportInput } from './reportInput.js';
 
 /** The answer in words, as page 1 gives it: conversion, target, purity, limits, states, count of flags. */
@@ -19,7 +19,7 @@ export function verdictSentences({ series, method }: ReportInput): string[] {
   const { purity } = last.amounts;
   if (purity)
     sentences.push(
-      `Mass fraction of ${method.purity?.of ?? 'the product'} ${formatQuantity(purity.result.value, purity.result.u)} g/g, expanded uncertainty ${formatPercent(purity.expandedU, undefined)} (k = ${purity.coverageFactor.toFixed(2)}).`,
+      `Mass fraction of ${method.purity?.of ?? 'the product'} ${formatQuantity(purity.result.value, purity.result.u)} g/g, expanded uncertainty ${formatU(purity.expandedU)} g/g (k = ${purity.coverageFactor.toFixed(2)}).`,
     );
   for (const { words } of judgeLimits(last.amounts, method)) sentences.push(`${words.charAt(0).toUpperCase()}${words.slice(1)}.`);
   const over = last.amounts.residualSolvents?.filter(({ verdict }) => verdict === 'above' || verdict === 'near') ?? [];
@@ -46,7 +46,7 @@ export function verdictSentences({ series, method }: ReportInput): string[] {
 function targetSentences({ states, forecast, kinetics }: ReportInput['series'], target: number | undefined): string[] {
   if (target === undefined) return [];
   const reached = states.find(({ state }) => state === 'target-reached');
-  if (reached) return [`Target of ${formatPercent(target, undefined)} reached: ${reached.evidence}.`];
+  if (reached) return [`Target of ${formatTarget(target)} reached: ${reached.evidence}.`];
   const others = states
     .filter(({ state }) => state === 'stalled' || state === 'limit-broken')
     .map(({ state, evidence }) => `${state === 'stalled' ? 'Stalled' : 'Limit broken'}: ${evidence}.`);
@@ -54,11 +54,11 @@ function targetSentences({ states, forecast, kinetics }: ReportInput['series'], 
     const interval = `95 % interval ${formatElapsed(forecast.lowS)} to ${formatElapsed(forecast.highS)}`;
     return [
       ...others,
-      `Target of ${formatPercent(target, undefined)} expected ${formatElapsed(forecast.elapsedS)} after the start (${interval}; ${forecast.words}).`,
+      `Target of ${formatTarget(target)} expected ${formatElapsed(forecast.elapsedS)} after the start (${interval}; ${forecast.words}).`,
     ];
   }
   return [
     ...others,
-    `Target of ${formatPercent(target, undefined)} not reached; forecast ${forecast?.words ?? 'not made'}${kinetics ? ` (${kinetics.words})` : ''}.`,
+    `Target of ${formatTarget(target)} not reached; forecast ${forecast?.words ?? 'not made'}${kinetics ? ` (${kinetics.words})` : ''}.`,
   ];
 }

@@ -11,7 +11,7 @@ export function driftChart(id: string, points: readonly SeriesPoint[], key: stri
   });
   const first = all[0];
   if (all.length < 3 || first === undefined) return undefined;
-  const [widthPx, heightPx] = [360, 190];
+  const [widthPx, heightPx] = [360, 300];
   const moved = all.map(({ elapsedS, shiftPpm }) => ({ elapsedS, movedPpb: 1000 * (shiftPpm - first.shiftPpm) }));
   const most = Math.max(1, ...moved.map(({ movedPpb }) => Math.abs(movedPpb))) * 1.15;
   const hours = points.map(({ elapsedS }) => elapsedS / 3600);
@@ -36,6 +36,6 @@ export function driftChart(id: string, points: readonly SeriesPoint[], key: stri
     label(frame.plot.left + 4, frame.plot.top + 10, `from ${first.shiftPpm.toFixed(3)} ppm`, 'start', ink.soft, 10.5),
   ];
   const spanPpm = Math.max(...moved.map(({ movedPpb }) => movedPpb)) - Math.min(...moved.map(({ movedPpb }) => movedPpb));
-  const description = `Shift of ${key} against time; it wandered over ${(spanPpm / 1000).toFixed(4)} ppm.`;
+  const description = `It moved within ${(spanPpm / 1000).toFixed(4)} ppm.`;
   return { svg: wrapSvg(id, widthPx, heightPx, title, description, parts), widthPx, heightPx, description };
 }

@@ -37,12 +37,14 @@ export function stackChart(
     const path = line<number>()
       .x((_, k) => Math.round(frame.x(strip.firstPpm - k * strip.stepPpm) * 10) / 10)
       .y((value) => Math.round(frame.y((value * strip.scale) / most + base) * 10) / 10)([...strip.data]);
-    const shade = Math.round(150 - (110 * index) / Math.max(1, traces.length - 1));
-    parts.push(`<path d="${path ?? ''}" fill="none" stroke="rgb(${shade},${shade},${shade})" stroke-width="1"/>`);
+    const opacity = 0.5 + (0.5 * index) / Math.max(1, traces.length - 1);
+    parts.push(
+      `<path d="${path ?? ''}" fill="none" stroke="${ink.data}" stroke-opacity="${opacity.toFixed(2)}" stroke-width="1"/>`,
+    );
     if (index === 0 || index === traces.length - 1)
       parts.push(label(frame.plot.right + 4, frame.y(base) + 3, `${(elapsedS / 3600).toFixed(1)} h`, 'start', ink.soft, 10));
   });
-  const description = `Traces of ${key} through time, ${traces.length} of ${all.length} points, first at the bottom, common scale.`;
+  const description = `${traces.length} of ${all.length} points, the first at the bottom, on one scale.`;
   return { svg: wrapSvg(id, widthPx, heightPx, title, description, parts), widthPx, heightPx, description };
 }
 

@@ -11,7 +11,7 @@ export function stripChart(
 ): { svg: string; widthPx: number; heightPx: number; description: string } | undefined {
   const strip = signal.strip;
   if (!strip || strip.data.length < 4) return undefined;
-  const [widthPx, heightPx] = [360, 236];
+  const [widthPx, heightPx] = [300, 220];
   const { data, fit, firstPpm, stepPpm } = strip;
   const most = Math.max(...data, ...fit, 1e-12);
   const rest = data.map((value, index) => value - (fit[index] ?? 0));
@@ -19,7 +19,7 @@ export function stripChart(
   const frame = makeFrame({
     widthPx,
     heightPx,
-    x: { domain: [firstPpm, lastPpm], label: 'chemical shift / ppm', ticks: 5 },
+    x: { domain: [firstPpm, lastPpm], label: 'chemical shift / ppm', ticks: 4 },
     y: { domain: [-0.42 * most, 1.08 * most], label: '', hidden: true },
   });
   const x = (index: number) => Math.round(frame.x(firstPpm - index * stepPpm) * 100) / 100;
@@ -41,8 +41,8 @@ export function stripChart(
     `<path d="${path(data)}" fill="none" stroke="${ink.data}" stroke-width="1.1"/>`,
     `<path d="${path(fit)}" fill="none" stroke="${seriesStyles[1].color}" stroke-width="1.5" stroke-opacity="0.85"/>`,
     `<path d="${path(rest, restShift)}" fill="none" stroke="${seriesStyles[0].color}" stroke-width="0.9"/>`,
-    label(frame.plot.left + 2, frame.y(restShift) - 6, 'left over', 'start', seriesStyles[0].color, 9.5),
+    label(frame.plot.left + 2, frame.y(restShift) - 6, 'left over', 'start', ink.soft, 9.5),
   ];
-  const description = `${signal.key}: ${signal.words}. Grey: data; orange: fitted pattern with its lines as sticks; blue below: what is left over.`;
+  const description = `${signal.words.charAt(0).toUpperCase()}${signal.words.slice(1)}.`;
   return { svg: wrapSvg(id, widthPx, heightPx, title, description, parts), widthPx, heightPx, description };
 }

@@ -10,6 +10,8 @@ export function renderBlock(block: Block): string {
   switch (block.kind) {
     case 'text':
       return `<p${block.tone ? ` class="${block.tone}"` : ''}>${escapeMarkup(block.text)}</p>`;
+    case 'subheading':
+      return `<h3>${escapeMarkup(block.text)}</h3>`;
     case 'list':
       return `<ul>${block.items.map((item) => `<li>${escapeMarkup(item)}</li>`).join('')}</ul>`;
     case 'facts':
@@ -26,14 +28,14 @@ export function renderBlock(block: Block): string {
 /** Small figures that follow each other stand side by side. */
 export function renderBlocks(blocks: readonly Block[]): string {
   const parts: string[] = [];
-  let isInGrid = false;
+  let columns = 1;
   for (const block of blocks) {
-    const isHalf = block.kind === 'figure' && block.half === true;
-    if (isHalf !== isInGrid) parts.push(isHalf ? '<div class="grid">' : '</div>');
-    isInGrid = isHalf;
+    const own = block.kind === 'figure' ? (block.perRow ?? 1) : 1;
+    if (own !== columns) parts.push(columns > 1 ? '</div>' : '', own > 1 ? `<div class="grid of${own}">` : '');
+    columns = own;
     parts.push(renderBlock(block));
   }
-  if (isInGrid) parts.push('</div>');
+  if (columns > 1) parts.push('</div>');
   return parts.join('\n');
 }
 
@@ -60,7 +62,7 @@ function renderTable({ caption, columns, rows, small }: TableBlock): string {
   return `<div class="scroll" role="region" aria-label="${name}" tabindex="0"><table${small ? ' class="small"' : ''}><caption>${name}</caption><thead><tr>${head}</tr></thead><tbody>${body}</tbody></table></div>`;
 }
 
-function renderFigure({ title, description, svg, numbers, half }: FigureBlock): string {
+function renderFigure({ title, description, svg, numbers, perRow }: FigureBlock): string {
   const details = numbers ? `<details><summary>Numbers of this chart</summary>${renderTable(numbers)}</details>` : '';
-  return `<figure${half ? ' class="half"' : ''}><div class="drawing">${svg}</div><figcaption><strong>${escapeMarkup(title)}.</strong> ${escapeMarkup(description)}</figcaption>${details}</figure>`;
+  return `<figure${perRow ? ' class="beside"' : ''}><div class="drawing">${svg}</div><figcaption><strong>${escapeMarkup(title)}.</strong> ${escapeMarkup(description)}</figcaption>${details}</figure>`;
 }

@@ -7,6 +7,8 @@ import type { ReportInput } from '../reportInput.js';
 import type { Block, Section } from '../reportModel.js';
 
 const flaggedShownMax = 4;
+const legend =
+  'In each drawing of a fit: the data in grey, the fitted pattern over it, its expected lines as dashed sticks, and below what is left over, all on one scale. Drawings are thinned by minimum and maximum per column.';
 
 /** Per diagnostic signal: traces through time, and the fitted pattern at the first, the middle and the last point. */
 export function signalsSection({ series, method }: ReportInput): Section {
@@ -16,6 +18,7 @@ export function signalsSection({ series, method }: ReportInput): Section {
   const signals = method.species.flatMap(({ name, signals: own }) =>
     own.filter(({ use }) => use !== 'ignore').map((signal) => ({ name, signal })),
   );
+  if (chosen.length > 0) blocks.push({ kind: 'text', tone: 'note', text: legend });
   blocks.push(
     verdictTable(
       chosen,
@@ -23,19 +26,32 @@ export function signalsSection({ series, method }: ReportInput): Section {
     ),
   );
   signals.forEach(({ name, signal }, index) => {
-    const stack = stackChart(`stack-${index}`, usable, signal.key, `${name}, ${signal.id}: through time`);
-    if (stack) blocks.push({ kind: 'figure', title: `${name}, ${signal.id}: through time`, half: true, ...stack });
-    const drift = driftChart(`drift-${index}`, usable, signal.key, `${name}, ${signal.id}: shift through time`);
-    if (drift) blocks.push({ kind: 'figure', title: `${name}, ${signal.id}: shift through time`, half: true, ...drift });
-    chosen.forEach((point, place) => {
-      const measured = point.record.measurement!.signals.find(({ key }) => key === signal.key);
-      const title = `${name}, ${signal.id}: ${formatElapsed(point.elapsedS)}`;
-      const strip = measured ? stripChart(`strip-${index}-${place}`, measured, title) : undefined;
-      if (strip) blocks.push({ kind: 'figure', title, half: true, ...strip });
-    });
+    blocks.push(...signalBlocks(usable, chosen, signal.key, `${name}, ${signal.id}`, index));
   });
   if (usable.length === 0) blocks.push({ kind: 'text', text: 'No time point with measured signals yet.' });
   return { id: 'signals', heading: 'Diagnostic signals', blocks };
+}
+
+/** Through time above; below, the fit at each chosen point, three in a row. */
+function signalBlocks(
+  usable: readonly SeriesPoint[],
+  chosen: readonly SeriesPoint[],
+  key: string,
+  name: string,
+  index: number,
+): Block[] {
+  const blocks: Block[] = [];
+  const stack = stackChart(`stack-${index}`, usable, key, `${name}: through time`);
+  if (stack) blocks.push({ kind: 'figure', title: 'Traces through time', perRow: 2, ...stack });
+  const drift = driftChart(`drift-${index}`, usable, key, `${name}: shift through time`);
+  if (drift) blocks.push({ kind: 'figure', title: 'Shift through time', perRow: 2, ...drift });
+  chosen.forEach((point, place) => {
+    const measured = point.record.measurement!.signals.find((signal) => signal.key === key);
+    const title = `${formatElapsed(point.elapsedS)}, ${point.file}`;
+    const strip = measured ? stripChart(`strip-${index}-${place}`, measured, `${name}: ${title}`) : undefined;
+    if (strip) blocks.push({ kind: 'figure', title, perRow: 3, ...strip });
+  });
+  return blocks.length > 0 ? [{ kind: 'subheading', text: name }, ...blocks] : [];
 }
 
 /** First, middle, last, and a few flagged ones in between. */
