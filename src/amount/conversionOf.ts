@@ -2,6 +2,8 @@ import type { Quantity } from '../base/quantity.js';
 import type { Method } from '../method/method.js';
 import { shareOf } from './shareOf.js';
 
+const uMax = 0.3;
+
 /**
  * Conversion: n(to)/s over n(of) + n(to)/s, s the stoichiometry; without `to` the sum runs over every intermediate and product.
  *
@@ -23,5 +25,7 @@ export function conversionOf(method: Method, amounts: ReadonlyMap<string, Quanti
     return amount ? [{ value: amount.value / stoichiometry, u: amount.u / stoichiometry, counted: true }] : [];
   });
   if (terms.length < formed.length) return undefined;
-  return shareOf([{ ...start, counted: false }, ...terms]);
+  const share = shareOf([{ ...start, counted: false }, ...terms]);
+  // An uncertainty as wide as the scale says nothing: it is not stated.
+  return share && share.u < uMax ? share : undefined;
 }
