@@ -1,7 +1,7 @@
 import { type LineComponent, withComponents } from './lineComponents.js';
 import type { Located } from './locateSignals.js';
 import type { Parameter, RegionModel, Term } from './regionModel.js';
-import type { Target } from './signalTargets.js';
+import { reachPpm, type Target } from './signalTargets.js';
 
 /** The line shape that the lines of one spectrum share. */
 export interface SharedShape {
@@ -50,9 +50,9 @@ export function buildRegionModel(
   const sharps = targets.filter((target) => !target.signal.pattern.isBroad).length;
   const terms = targets.map((target): Term => {
     const { shiftHz, isPresent } = located.get(target.key)!;
-    const { shiftPpm, withinPpm, pattern } = target.signal;
+    const { shiftPpm, pattern } = target.signal;
     const centre = shiftPpm * observeMhz;
-    const reach = withinPpm * observeMhz;
+    const reach = reachPpm(target.signal) * observeMhz;
     const shift = add('shift', centre, isPresent ? reach : 0, centre - reach, centre + reach, shiftHz);
     const widths = [common];
     if (pattern.isBroad) widths.push(add('log-width', Math.log(broadFactor), isPresent ? broadSigma : 0, 0, 5));

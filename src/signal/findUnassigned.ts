@@ -33,7 +33,7 @@ export function findUnassigned(
   const isBlind = (shiftHz: number) =>
     residual.lines.some((line) => Math.abs(line.shiftHz - shiftHz) < 4 * line.widthHz) ||
     hidden.some(([low, high]) => shiftHz / observeMhz > low && shiftHz / observeMhz < high);
-  const open = residual.peaks.filter((peak) => !isShadow(peak, residual.peaks, strong, spectrum.nucleus, isBlind));
+  const open = residual.peaks.filter((peak) => !isShadow(peak, residual.faint, strong, spectrum.nucleus, isBlind));
   return grouped(open)
     .map((peaks) => readMultiplet(spectrum, residual.trace, peaks, widthHz, whitening))
     .filter((found) => found.area > scoreMin * found.u)

@@ -21,8 +21,14 @@ export function flagSignals(signals: readonly MeasuredSignal[]): Flag[] {
     if (verdict !== 'differs' && leftOver !== undefined) {
       flags.push({ code: 'left-over', signal: key, message, weight: leftOver.share < leftOverFlagShare ? 'note' : 'flag' });
     }
+    if (contradicts(signal)) flags.push({ code: 'signals-disagree', signal: key, message });
     return flags;
   });
+}
+
+/** Whether the area per nucleus contradicts that of the species' other signals. */
+function contradicts({ ratioToOthers }: MeasuredSignal): boolean {
+  return ratioToOthers !== undefined && Math.abs(ratioToOthers.value - 1) > Math.max(5 * ratioToOthers.u, 0.05);
 }
 
 /** Whether a crowded signal could still be measured well. */

@@ -13,7 +13,7 @@ const mirrorHz = 2.5;
  * Whether a peak is the shadow of a strong line: a 13C satellite of the right share and distance with its mirror image on the
  * other side, or one of a pair of spinning side bands.
  *
- * @param peaks  all peaks, explained or not, that could be the mirror image
+ * @param peaks  all peaks that could be the mirror image, faint ones as well
  * @param lines  strong lines
  * @param isBlind whether a mirror image at this place could not be seen
  * @returns false when no line explains it
@@ -36,7 +36,7 @@ export function isShadow(
     if (!isSatellite && !isSideBand) return false;
     const mirror = line.shiftHz - away;
     const hasMirror = peaks.some(
-      (other) => Math.abs(other.shiftHz - mirror) < mirrorHz && other.area > 0.5 * peak.area && other.area < 2 * peak.area,
+      (other) => Math.abs(other.shiftHz - mirror) < mirrorHz && other.area > 0.35 * peak.area && other.area < 2.8 * peak.area,
     );
     return hasMirror || (isSatellite && isBlind(mirror));
   });

@@ -1,5 +1,5 @@
 import type { Spectrum } from '../spectrum/spectrum.js';
-import type { Target } from './signalTargets.js';
+import { reachPpm, type Target } from './signalTargets.js';
 
 /** Where a signal was found before fitting. */
 export interface Located {
@@ -75,7 +75,7 @@ function bestPlace(spectrum: Spectrum, left: Float64Array, target: Target, width
   const width = signal.pattern.isBroad ? 8 * widthHz : widthHz;
   const firstHz = firstPpm * observeMhz;
   const centre = signal.shiftPpm * observeMhz;
-  const reach = signal.withinPpm * observeMhz;
+  const reach = reachPpm(signal) * observeMhz;
   const high = centre + reach + target.spanHz[1];
   const low = centre - reach + target.spanHz[0];
   const from = Math.max(0, Math.floor((firstHz - high) / stepHz) - 1);
@@ -182,8 +182,8 @@ function takeAway(spectrum: Spectrum, left: Float64Array, target: Target, place:
 function overlapping(targets: readonly Target[], observeMhz: number, widthHz: number): Target[][] {
   const spans = targets
     .map((target) => {
-      const { shiftPpm, withinPpm } = target.signal;
-      const reach = withinPpm * observeMhz + 2 * widthHz;
+      const { shiftPpm } = target.signal;
+      const reach = reachPpm(target.signal) * observeMhz + 2 * widthHz;
       const centre = shiftPpm * observeMhz;
       return { target, low: centre - reach + target.spanHz[0], high: centre + reach + target.spanHz[1] };
     })

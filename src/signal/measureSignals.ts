@@ -4,6 +4,7 @@ import { addExtraLines } from './addExtraLines.js';
 import { areaOf } from './areaOf.js';
 import { backgroundPrefix, backgroundTargets } from './backgroundTargets.js';
 import { binSpectrum } from './binSpectrum.js';
+import { compareWithOthers } from './compareWithOthers.js';
 import { describeSignal, isSignificant } from './describeSignal.js';
 import { drawStrip } from './drawStrip.js';
 import { findUnassigned } from './findUnassigned.js';
@@ -76,7 +77,7 @@ export function measureSignals(fine: Spectrum, method: Method): Measurement {
   });
   const ranged = declared.filter(({ lines }) => lines.length === 0);
   for (const target of ranged) byKey.set(target.key, measureRange(spectrum, target, explained));
-  const signals = declared.map(({ key }) => byKey.get(key)!);
+  const signals = compareWithOthers(declared.map(({ key }) => byKey.get(key)!));
 
   return {
     signals,

@@ -39,6 +39,8 @@ export interface MeasuredSignal {
   /** Best other pattern and its odds against the declared one. */
   readonly other?: { readonly pattern: string; readonly odds: number };
   readonly neighboursImplied?: number;
+  /** Area per nucleus over that of the species' other signals, when both are measured. */
+  readonly ratioToOthers?: { readonly value: number; readonly u: number };
   /** Upper limit of the area at 95 % when absent. */
   readonly areaUpper95?: number;
   /** Standard uncertainty of the area at zero area: 3.3 u0 detection, 10 u0 quantitation (ICH Q2). */

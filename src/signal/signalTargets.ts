@@ -20,6 +20,15 @@ export interface Target {
 /** Lines below this share of the tallest are drawn but do not widen a window. */
 const faintShare = 0.01;
 
+/** A signal that wanders is sought this many times further, and at least this far. */
+const movingFactor = 3;
+const movingPpm = 0.15;
+
+/** How far from its listed shift a signal is sought, ppm. */
+export function reachPpm({ withinPpm, moves }: Pick<MethodSignal, 'withinPpm' | 'moves'>): number {
+  return moves ? Math.max(movingFactor * withinPpm, movingPpm) : withinPpm;
+}
+
 const remembered = new WeakMap<MethodSpecies, Map<number, ReadonlyMap<string, readonly Line[]>>>();
 
 /**

@@ -7,6 +7,7 @@ import { type FittedLine, sticksOf, tailsOf } from './tailsOf.js';
 
 /** Areas over their noise from which a line is reported; `quality.unassigned_over_noise` of a method overrides it. */
 export const scoreDefault = 5;
+const faintScore = 2.2;
 /** Beside a line, this share of it may be a fault of its shape, more where the shape is known to misfit. */
 const shapeShare = 0.0015;
 const shapeMisfits = 3;
@@ -20,6 +21,8 @@ export interface Residual {
   /** shape (n), units of the spectrum. */
   readonly trace: Float64Array;
   readonly peaks: readonly Peak[];
+  /** Weaker ones as well: good enough to see the mirror image of a peak, not to report. */
+  readonly faint: readonly Peak[];
   /** Lines that are explained, tall ones first. */
   readonly lines: readonly FittedLine[];
 }
@@ -46,7 +49,8 @@ export function unexplainedPeaks(
   const trace = real.map((value, i) => value - model[i]!);
   const lines = regions.flatMap(({ fit }) => sticksOf(fit)).filter(({ key }) => !key.startsWith(extraPrefix));
   const areaU = 1.5 * noise * Math.sqrt(Math.PI * widthHz * stepHz);
-  const found = pickPeaks(trace, firstPpm * observeMhz, stepHz, widthHz, scoreMin * areaU);
+  const faint = pickPeaks(trace, firstPpm * observeMhz, stepHz, widthHz, faintScore * areaU);
+  const found = faint.filter(({ area }) => area > scoreMin * areaU);
   const tall = lines.filter((line) => line.area > 0).sort((a, b) => b.area - a.area || b.shiftHz - a.shiftHz);
   const share = shapeShare + shapeMisfits * misfit;
   const peaks = found.filter((peak) => {
@@ -59,7 +63,7 @@ export function unexplainedPeaks(
     }, 0);
     return peak.area > shadow;
   });
-  return { trace, peaks, lines: tall };
+  return { trace, peaks, faint, lines: tall };
 }
 
 /** Ranges [low, high] in ppm where lines were never declared singly (`m`): nothing there is unexplained. */
