@@ -1,4 +1,5 @@
 import type { PointRecord } from '../point/pointRecord.js';
+import type { Series } from '../series/series.js';
 import { fileFacts } from './fileFacts.js';
 import type { ExceptionName } from './ledgerEntry.js';
 import type { RunState } from './runState.js';
@@ -7,6 +8,7 @@ export type ExceptionKind =
   | Exclude<ExceptionName, 'gone'>
   | 'gone'
   | 'late'
+  | 'gap'
   | 'duplicate'
   | 'replaced'
   | 'vanished'
@@ -128,4 +130,15 @@ export function acquiredTimes(
     if (first !== undefined) times.set(sha256, first);
   }
   return times;
+}
+
+/** Pauses that the series found before a point; told by the entry of that point. */
+export function gapFacts(state: RunState, { points }: Pick<Series, 'points'>): ExceptionFact[] {
+  return points.flatMap(({ file, sha256, flags }) => {
+    const flag = flags.find(({ code }) => code === 'gap');
+    const kept = [...state.files.values()].find((other) => other.file === file && other.kept.sha256 === sha256)?.kept;
+    return flag !== undefined && kept !== undefined
+      ? [{ kind: 'gap', message: flag.message, file, seq: kept.seq, at: kept.at }]
+      : [];
+  });
 }

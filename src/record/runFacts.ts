@@ -4,7 +4,7 @@ import type { Series } from '../series/series.js';
 import { type Amendment, amendmentsOf } from './amendmentsOf.js';
 import { joinPath, pathText } from './bytePath.js';
 import { deriveRunSeries } from './deriveRunSeries.js';
-import { acquiredTimes, type ExceptionFact, exceptionFacts } from './exceptionFacts.js';
+import { acquiredTimes, type ExceptionFact, exceptionFacts, gapFacts } from './exceptionFacts.js';
 import { type FileFact, fileFacts } from './fileFacts.js';
 import { type FilePort, type Path, realFilePort } from './filePort.js';
 import { dataHeadOf, type Head, ledgerName } from './ledger.js';
@@ -99,6 +99,8 @@ export async function factsOf(
   if (!methodText.ok) return methodText;
   const head = dataHeadOf(lines);
   const headEntry = lines[head.seq - 1]!.entry;
+  const series = derive(contents.value, state);
+  const exceptions = exceptionFacts(state, acquiredTimes(contents.value.files));
   return ok({
     run: state.run,
     method: contents.value.method,
@@ -106,10 +108,10 @@ export async function factsOf(
     methodRevision: state.method.revision,
     revisions: state.revisions.map(revisionFact),
     runFile: contents.value.runFile,
-    series: derive(contents.value, state),
+    series,
     head,
     amendments: amendmentsOf(state),
-    exceptions: exceptionFacts(state, acquiredTimes(contents.value.files)),
+    exceptions: [...exceptions, ...gapFacts(state, series)].sort((a, b) => a.seq - b.seq),
     files: fileFacts(state),
     createdUtc: headEntry.at,
     program: headEntry.program,

@@ -1,7 +1,8 @@
 import { describe, expect, it } from 'vitest';
 import type { InputEntry } from '../../src/record/ledgerEntry.js';
+import { holdRecord } from '../../src/record/runRecord.js';
 import { type Call, type Fault, faultAt, Killed, makeFaultyPort } from './faultyPort.js';
-import { failures, lasting, ledgerOf, makeWorld, nightFiles, pass, verify, type World } from './world.js';
+import { contextOf, failures, lasting, ledgerOf, makeWorld, nightFiles, out, pass, verify, type World } from './world.js';
 
 const files = nightFiles(3);
 
@@ -91,6 +92,23 @@ describe('a watcher that is killed', () => {
     expect((await passWith(world, plan)).isKilled).toBe(true);
     expect(world.disk.files('/out/BX-0417/points').size).toBeGreaterThan(0);
     await expectRecovered(world, expected, 'killed before the append');
+  });
+
+  it('F05: a line that was written but not synced is synced by whoever opens the ledger next, before anything is built on it', async () => {
+    const world = makeWorld(files);
+    let appends = 0;
+    const plan = ({ operation, path }: Call): Fault | undefined =>
+      operation === 'write' && path.endsWith('ledger.jsonl') && ++appends === 3 ? { kind: 'kill', when: 'after' } : undefined;
+    expect((await passWith(world, plan)).isKilled).toBe(true);
+    const lines = ledgerOf(world).length;
+    expect(ledgerOf({ ...world, disk: world.disk.afterPowerCut() })).toHaveLength(lines - 1);
+    // Without the lock no takeover is noted, whose own sync would hide a missing one.
+    world.disk.remove(`${out}/BX-0417/.held-by`);
+    const held = await holdRecord({ context: contextOf(world), outputFolder: out, names: ['BX-0417'], run: 'BX-0417' });
+    expect(held.ok && held.value.lines().length).toBeGreaterThanOrEqual(lines);
+    const seen = held.ok ? held.value.lines().filter(({ entry }) => entry.kind === 'input').length : 0;
+    world.disk = world.disk.afterPowerCut();
+    expect(ledgerOf(world).filter(({ kind }) => kind === 'input')).toHaveLength(seen);
   });
 
   it('F04: between ledger and report renders the report at the next start', async () => {
