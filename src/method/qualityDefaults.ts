@@ -13,6 +13,16 @@ export const qualityDefaults: Readonly<Record<string, QualityDefault>> = {
     meaning: 'points at the largest value of a FID from which on the receiver counts as overloaded',
   },
   width_hz: { value: 5, unit: 'Hz', meaning: 'full width of the reference line above which lines count as broad' },
+  asymmetry: {
+    value: 0.35,
+    unit: 'share',
+    meaning: 'asymmetry of the reference line at a fifth of its height above which the shim is questioned',
+  },
+  decay_left: {
+    value: 0.3,
+    unit: 'share',
+    meaning: 'share of the signal left at the end of the FID above which the acquisition was too short',
+  },
   points_across_line: {
     value: 3,
     unit: 'points',

@@ -5,6 +5,8 @@ export interface Smoothed {
   /** shape (m) */
   readonly levels: Float64Array;
   readonly bends: number;
+  /** Smoothness used; 0 when only a constant could be had. */
+  readonly lambda: number;
   /** Effective number of parameters. */
   readonly freedom: number;
 }
@@ -37,12 +39,12 @@ export function chooseSmoothness(means: Float64Array, weights: Float64Array, noi
       sum += robust[k]! * (means[k]! - levels[k]!) ** 2;
       total += robust[k]!;
     }
-    const cost = sum / total / (1 - (1.3 * freedom) / used) ** 2;
-    if (!best || cost < best.cost) best = { levels, bends, freedom, cost };
+    const cost = sum / total / (1 - (1.6 * freedom) / used) ** 2;
+    if (!best || cost < best.cost) best = { levels, bends, lambda, freedom, cost };
   }
   if (best) return best;
   const middle = medianOf(means.filter((_, k) => weights[k]! > 0));
-  return { levels: new Float64Array(means.length).fill(Number.isNaN(middle) ? 0 : middle), bends: 0, freedom: 1 };
+  return { levels: new Float64Array(means.length).fill(Number.isNaN(middle) ? 0 : middle), bends: 0, lambda: 0, freedom: 1 };
 }
 
 /** Sum over frequencies k of 1 / (1 + (k / (2 bends))^4), k half-periods from end to end. */

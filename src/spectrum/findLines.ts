@@ -26,6 +26,8 @@ const additions = 2;
 /** Lines above this many times the noise are taken out to see what stands on their tails. */
 const giantFrom = 100;
 const giantsMax = 6;
+/** A range of slopes wider than this needs a first guess. */
+const wideTurns = 20;
 /** A slope that bends the phase by more than this across a group calls for another look at the groups. */
 const bendRad = 0.01;
 
@@ -44,15 +46,18 @@ export function findLines(raw: Raw, slopeRangeRad: readonly [number, number]): F
   const perIndependent = Math.max(1, n / raw.analysisIndependent);
   const slopeOf = (slopeRad: number): SlopeOf => ({ step: slopeRad / n, turnsThrough: raw.turnsThrough });
   const { peaks: tops, noise } = findPeaks(analysis, peakCountMax, level, perIndependent);
-  let slopeRad = scanFirstOrder(analysis, tops, noise, slopeRangeRad).slopeRad;
+  // An onset seen in time leaves a few turns at most: the groups themselves tell better than single tops, which tails of giants turn.
+  const isWide = slopeRangeRad[1] - slopeRangeRad[0] > 2 * Math.PI * wideTurns;
+  let slopeRad = isWide ? scanFirstOrder(analysis, tops, noise, slopeRangeRad).slopeRad : 0;
   let local = localPhases(analysis, tops, noise, slopeOf(slopeRad), 0);
   let fit = fitPhase(local, n, slopeRad, slopeRangeRad);
-  const peaks = addHidden(analysis, tops, local, noise, slopeOf(fit.firstRad), perIndependent);
+  const peaks = addHidden(analysis, tops, local, noise, slopeOf(isWide ? fit.firstRad : slopeRad), perIndependent);
   for (let turn = 0; turn < 3; turn += 1) {
     const extent = Math.max(0, ...local.map(({ group }) => group.to - group.from));
     const isSettled = Math.abs(fit.firstRad - slopeRad) * (extent / n) < bendRad;
     if (isSettled && (turn > 0 || peaks === tops)) break;
-    slopeRad = fit.firstRad;
+    // The first look, with giants in the way, only serves to take them out.
+    if (turn > 0 || isWide) slopeRad = fit.firstRad;
     local = localPhases(analysis, peaks, noise, slopeOf(slopeRad), additions);
     fit = fitPhase(local, n, slopeRad, turn === 0 ? slopeRangeRad : [slopeRad - 0.6 * Math.PI, slopeRad + 0.6 * Math.PI]);
   }

@@ -46,7 +46,7 @@ function scan(
   const step = (2 * Math.PI) / 120;
   const [first, last] = [Math.ceil((low - startRad) / step), Math.floor((high - startRad) / step)];
   const pull = slopePull([low, high]);
-  const weights = data.map(({ u }) => 1 / (u + 0.03));
+  const weights = data.map(({ u }) => 1 / (u + 0.12));
   const total = weights.reduce((sum, value) => sum + value, 0);
   let best = { zeroRad: 0, firstRad: startRad, score: Number.NEGATIVE_INFINITY };
   for (let k = first; k <= last; k += 1) {

@@ -1,5 +1,6 @@
-import { baselineBins } from './baselineBins.js';
+import { baselineBins, sumTails } from './baselineBins.js';
 import { chooseSmoothness } from './chooseSmoothness.js';
+import { holdBelow } from './holdBelow.js';
 import type { LineTails } from './lineTails.js';
 import { maskHidden, maskLines } from './maskSignals.js';
 import { medianOf } from './medianOf.js';
@@ -42,14 +43,17 @@ export function flattenBaseline(
   const rough = roughNoise(real);
   const masked = maskLines(n, tails, rough);
   const binCount = Math.min(binCountMax, Math.floor(n / 8));
-  const first = baselineBins(real, masked, tails, binCount);
-  const coarse = chooseSmoothness(first.means, first.weights, rough, (2 * independent) / n);
-  maskHidden(real, masked, first.tailAt, coarse.levels, rough, tails);
-  const bins = baselineBins(real, masked, tails, binCount);
-  const { levels, bends, freedom } = chooseSmoothness(bins.means, bins.weights, rough, (2 * independent) / n);
+  const tailSum = sumTails(n, tails, binCount);
+  const independence = (2 * independent) / n;
+  const first = baselineBins(real, masked, tailSum);
+  const coarse = chooseSmoothness(first.means, first.weights, rough, independence);
+  maskHidden(real, masked, tailSum.at, coarse.levels, rough, tails);
+  const bins = baselineBins(real, masked, tailSum);
+  const { levels: smooth, bends, freedom, lambda } = chooseSmoothness(bins.means, bins.weights, rough, independence);
+  const levels = lambda > 0 ? holdBelow(real, bins, smooth, lambda, rough) : smooth;
   const flat = isFlat ? Float64Array.from(real) : subtract(real, levels);
   const free = masked.reduce((count, value) => count + (value === 0 ? 1 : 0), 0);
-  const noise = noiseOf(flat, masked, bins.tailAt);
+  const noise = noiseOf(flat, masked, tailSum.at);
   const perLevel = Math.max(1, ((free / n) * independent) / freedom);
   return {
     real: flat,
@@ -63,7 +67,7 @@ export function flattenBaseline(
 
 /** Noise from second differences of points eight apart: blind to slow baselines and, by the median, to lines. */
 function roughNoise(real: Float64Array): number {
-  const stride = Math.max(1, Math.floor(real.length / 20_000));
+  const stride = Math.max(1, Math.floor(real.length / 8000));
   const differences: number[] = [];
   for (let i = 8; i < real.length - 8; i += stride) differences.push(Math.abs(real[i]! - (real[i - 8]! + real[i + 8]!) / 2));
   return Math.max((1.4826 * medianOf(differences)) / Math.sqrt(1.5), Number.MIN_VALUE);
@@ -87,11 +91,12 @@ const clippedVariance = 0.97334;
 
 /** rms of the signal-free points, tails taken out, clipped at three times itself. */
 function noiseOf(flat: Float64Array, masked: Uint8Array, tailAt: (i: number) => number): number {
-  const stride = Math.max(1, Math.floor(flat.length / 140_000));
+  const stride = Math.max(1, Math.floor(flat.length / 70_000));
   const values: number[] = [];
   for (let i = 0; i < flat.length; i += stride) if (masked[i] === 0) values.push(flat[i]! - tailAt(i));
   if (values.length < 200) return roughNoise(flat);
-  let sigma = 1.4826 * medianOf(values.map(Math.abs));
+  const every = Math.max(1, Math.floor(values.length / 8000));
+  let sigma = 1.4826 * medianOf(values.filter((_, k) => k % every === 0).map(Math.abs));
   for (let turn = 0; turn < 3; turn += 1) {
     let [sum, count] = [0, 0];
     for (const value of values) {

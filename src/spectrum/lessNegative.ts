@@ -1,6 +1,6 @@
 import type { ComplexSpectrum } from './complexSpectrum.js';
 import type { Peak } from './findPeaks.js';
-import type { PhaseFit } from './fitPhase.js';
+import { type PhaseFit, wrap } from './fitPhase.js';
 import { medianOf } from './medianOf.js';
 import { refinePhase } from './refinePhase.js';
 import { rotatePhase } from './rotatePhase.js';
@@ -29,7 +29,14 @@ export function lessNegative(spectrum: ComplexSpectrum, peaks: readonly Peak[], 
   if (before < negativeLeast) return fit;
   const other = refinePhase(spectrum, peaks, noise, fit, firstReachRad);
   const after = negativeArea(spectrum, other, noise);
-  return after < betterShare * before ? { ...fit, ...other } : fit;
+  if (!(after < betterShare * before)) return fit;
+  // How far two independent ways differ where the lines are is what the phase is uncertain by.
+  const n = spectrum.real.length;
+  const differences = peaks.slice(0, 30).map(({ index }) => {
+    const x = index / n - 0.5;
+    return Math.abs(wrap(other.zeroRad - fit.zeroRad + (other.firstRad - fit.firstRad) * x));
+  });
+  return { ...fit, ...other, restRad: medianOf(differences) };
 }
 
 function negativeArea(spectrum: ComplexSpectrum, phase: { zeroRad: number; firstRad: number }, noise: number): number {

@@ -86,6 +86,7 @@ export function makeSpectrum(acquisition: Acquisition, method: Method): Result<S
       phaseDeg: phased.phaseDeg,
       ...(raw.onsetPoints !== undefined ? { onsetPoints: raw.onsetPoints - phased.phaseDeg[1] / 360 } : {}),
       ...(pinned ? { referenceWidthHz: pinned.widthHz } : {}),
+      ...(pinned?.asymmetry !== undefined ? { referenceAsymmetry: pinned.asymmetry } : {}),
     },
     steps,
   };

@@ -10,6 +10,8 @@ export interface PinnedReference {
   /** Height over noise of the matched pattern. */
   readonly signalToNoise: number;
   readonly isSplit: boolean;
+  /** Of a single line at a fifth of its height: (far side - near side) / both; 0 is symmetric. */
+  readonly asymmetry?: number;
 }
 
 /** The axis of a real spectrum, index 0 at the highest shift. */
@@ -71,6 +73,7 @@ export function pinReference(
     widthHz: widthPoints * stepPpm * observeMhz,
     signalToNoise,
     isSplit: offsets.length === 1 && hasTwoTops(real, top, widthPoints, noise),
+    ...(offsets.length === 1 && signalToNoise > 60 ? { asymmetry: asymmetryAt(real, place, top) } : {}),
   };
 }
 
@@ -142,6 +145,19 @@ function halfHeightWidth(real: Float64Array, top: number): number {
     return Math.abs(k - step - top) + (inside > outside ? (inside - half) / (inside - outside) : 0);
   };
   return Math.max(1, edge(1) + edge(-1));
+}
+
+/** How unequally far the line reaches on both sides at a fifth of its height. */
+function asymmetryAt(real: Float64Array, place: number, top: number): number {
+  const level = (real[top] ?? 0) / 5;
+  const reach = (step: 1 | -1) => {
+    let k = top;
+    while (k > 0 && k < real.length - 1 && real[k]! > level) k += step;
+    const [inside, outside] = [real[k - step]!, real[k]!];
+    return Math.abs(k - step - place) + (inside > outside ? (inside - level) / (inside - outside) : 0);
+  };
+  const [right, left] = [reach(1), reach(-1)];
+  return (right - left) / (right + left);
 }
 
 /** A second top of comparable height within a few widths, with a real valley between. */

@@ -26,6 +26,15 @@ export function qualityFlags(
   const widthMax = qualityOf(quality, 'width_hz');
   if (widthHz !== undefined && widthHz > widthMax)
     add('lines-broad', `the reference line is ${widthHz.toFixed(1)} Hz wide; at most ${widthMax} Hz are usual`);
+  const asymmetry = spectrum.quality.referenceAsymmetry;
+  if (asymmetry !== undefined && Math.abs(asymmetry) > qualityOf(quality, 'asymmetry'))
+    add('lines-asymmetric', `the reference line reaches farther to one side (asymmetry ${asymmetry.toFixed(2)}): check the shim`);
+  const leftOver = decayLeft(spectrum);
+  if (leftOver !== undefined && leftOver > qualityOf(quality, 'decay_left'))
+    add(
+      'acquisition-short',
+      `the FID was cut when ${(100 * leftOver).toFixed(0)} % of the signal was left: lines carry ripples; acquire longer`,
+    );
   const pointsMin = qualityOf(quality, 'points_across_line');
   if (widthHz !== undefined && widthHz / spectrum.stepHz < pointsMin) {
     add(
@@ -49,6 +58,14 @@ export function qualityFlags(
       );
   }
   return flags;
+}
+
+/** What is left of the reference line's signal at the end of the acquisition, the window taken out; needs the width of one line. */
+function decayLeft(spectrum: Omit<Spectrum, 'flags'>): number | undefined {
+  const { acquisitionS, reference, steps } = spectrum;
+  const window = steps.find(({ step }) => step === 'window')?.parameters.line_broadening_hz;
+  if (acquisitionS === undefined || reference.widthHz === undefined || typeof window !== 'number') return undefined;
+  return Math.exp(-Math.PI * Math.max(0, reference.widthHz - window) * acquisitionS);
 }
 
 /** Points that lie within a thousandth of the largest value of their channel, beyond the one that is the largest. */

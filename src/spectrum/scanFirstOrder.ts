@@ -8,7 +8,7 @@ const stepRad = (2 * Math.PI) / 12;
  */
 export function slopePull([low, high]: readonly [number, number]): number {
   const turns = (high - low) / (2 * Math.PI);
-  return Math.min(0.03, 0.3 / Math.max(turns, 1)) / (2 * Math.PI);
+  return Math.min(0.05, 0.3 / Math.max(turns, 1)) / (2 * Math.PI);
 }
 
 /**
