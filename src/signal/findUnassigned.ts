@@ -29,7 +29,7 @@ export function findUnassigned(
   const { observeMhz } = spectrum;
   const hidden = hiddenRanges(method);
   const scoreMin = method.quality.unassigned_over_noise ?? scoreDefault;
-  const strong: Peak[] = [...residual.lines, ...residual.peaks].map(({ shiftHz, area }) => ({ shiftHz, area }));
+  const strong = joined([...residual.lines, ...residual.peaks], widthHz);
   const isBlind = (shiftHz: number) =>
     residual.lines.some((line) => Math.abs(line.shiftHz - shiftHz) < 4 * line.widthHz) ||
     hidden.some(([low, high]) => shiftHz / observeMhz > low && shiftHz / observeMhz < high);
@@ -44,6 +44,20 @@ export function findUnassigned(
       const suggestion = spectrum.nucleus === '1H' ? suggestImpurity(found.shiftPpm, found.pattern, method.solvent) : undefined;
       return { ...found, ...(suggestion !== undefined ? { suggestion } : {}) };
     });
+}
+
+/** Lines that stand closer than they are wide show as one, and have one pair of satellites. */
+function joined(lines: readonly Peak[], widthHz: number): Peak[] {
+  const tops: { shiftHz: number; area: number }[] = [];
+  for (const { shiftHz, area } of [...lines].sort((a, b) => b.shiftHz - a.shiftHz)) {
+    const last = tops.at(-1);
+    if (area <= 0) continue;
+    if (last !== undefined && last.shiftHz - shiftHz < 0.6 * widthHz) {
+      last.shiftHz = (last.shiftHz * last.area + shiftHz * area) / (last.area + area);
+      last.area += area;
+    } else tops.push({ shiftHz, area });
+  }
+  return tops;
 }
 
 function grouped(peaks: readonly Peak[]): Peak[][] {
