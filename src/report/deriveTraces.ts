@@ -1,4 +1,5 @@
 import type { SeriesPoint } from '../series/series.js';
+import { visible } from './escapeMarkup.js';
 import { formatElapsed } from './formatNumber.js';
 import type { ReportInput } from './reportInput.js';
 import type { TracePoint, Traces } from './reportModel.js';
@@ -30,8 +31,10 @@ function tracePoint({ file, block, elapsedS, status, record }: SeriesPoint): Tra
   const { overview, measurement } = record;
   const signals = measurement?.signals ?? [];
   return {
-    label: `${formatElapsed(elapsedS)} \u00b7 ${file}${block !== undefined ? `, block ${block}` : ''}${status === 'accepted' ? '' : ` \u00b7 ${status}`}`,
-    words: signals.map(({ key, words }) => `${key}: ${words}`),
+    label: visible(
+      `${formatElapsed(elapsedS)} \u00b7 ${file}${block !== undefined ? `, block ${block}` : ''}${status === 'accepted' ? '' : ` \u00b7 ${status}`}`,
+    ),
+    words: signals.map(({ key, words }) => visible(`${key}: ${words}`)),
     ...(overview ? { overview: packOverview(overview) } : {}),
     strips: signals.flatMap(({ key, strip }) => {
       if (!strip || strip.data.length < 4) return [];

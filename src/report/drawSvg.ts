@@ -3,8 +3,8 @@ import { pdfText } from './pdfText.js';
 type Document = PDFKit.PDFDocument;
 type Attributes = Readonly<Record<string, string>>;
 
-const element = /<(\/?)([a-z]+)((?:\s+[a-z-]+="[^"]*")*)\s*(\/?)>([^<]*)/g;
-const attribute = /([a-z-]+)="([^"]*)"/g;
+const element = /<(\/?)([a-z]+)((?:\s+[a-z0-9-]+="[^"]*")*)\s*(\/?)>([^<]*)/g;
+const attribute = /([a-z0-9-]+)="([^"]*)"/g;
 
 /**
  * Draws one of our own charts as vectors. It knows just what the charts are made of (line, rect, circle, polygon, path of M, L and

@@ -23,12 +23,12 @@ export interface IndexCard {
 /**
  * What the page of all runs says of one run.
  *
- * @param names folder names from the output folder down, as text
+ * @param names folder names from the output folder down, as bytes: they need not be UTF-8
  * @param target conversion that counts as done
  */
 export function indexCard(
   series: Series,
-  names: readonly string[],
+  names: readonly Buffer[],
   batch: string | undefined,
   target: number | undefined,
 ): IndexCard {
@@ -46,7 +46,7 @@ export function indexCard(
   ].filter((part) => part !== '');
   return {
     run: batch !== undefined && batch !== series.run ? `${batch} (${series.run})` : series.run,
-    href: `${names.map(encodeURIComponent).join('/')}/report.html`,
+    href: `${names.map(encodeName).join('/')}/report.html`,
     title: series.method.title,
     ...state,
     conversion: conversion ? formatPercent(conversion.value, conversion.u) : 'not stated',
@@ -58,6 +58,16 @@ export function indexCard(
     ),
     ...(target !== undefined ? { target } : {}),
   };
+}
+
+/** @source RFC 3986, 2.3: unreserved characters stand for themselves, every other byte is percent-encoded */
+function encodeName(name: Buffer): string {
+  return [...name]
+    .map((byte) => {
+      const character = String.fromCharCode(byte);
+      return /[A-Za-z0-9._~-]/.test(character) ? character : `%${byte.toString(16).toUpperCase().padStart(2, '0')}`;
+    })
+    .join('');
 }
 
 const looks = ['limit-broken', 'balance-lost', 'stalled', 'silent', 'trouble', 'new-signal'] as const;

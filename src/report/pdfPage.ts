@@ -2,13 +2,14 @@ import { drawSvg } from './drawSvg.js';
 import { pdfFonts } from './pdfFonts.js';
 import { PdfTable } from './pdfTable.js';
 import { pdfText } from './pdfText.js';
-import type { Block } from './reportModel.js';
+import type { Block, Highlight } from './reportModel.js';
 
 type Document = PDFKit.PDFDocument;
 type Figure = Extract<Block, { kind: 'figure' }>;
 
 const ink = '#1f2328';
 const soft = '#555b61';
+const toneColors = { good: '#00694c', look: '#9a4200', plain: '#0072B2' } as const;
 const size = { body: 9.2, small: 7.4, h1: 17, h2: 12.5, lead: 10.5 } as const;
 
 /** Sets blocks one below the other, with page breaks that widow no heading. Every piece is tagged. */
@@ -66,6 +67,41 @@ export class PdfPage {
     this.document.moveDown(0.4);
   }
 
+  /** The few large answers, side by side. */
+  highlights(highlights: readonly Highlight[]): void {
+    if (highlights.length === 0) return;
+    const { document } = this;
+    document.moveDown(0.8);
+    const gap = 12;
+    const width = (this.width - gap * (highlights.length - 1)) / highlights.length;
+    const top = document.y;
+    let bottom = top;
+    highlights.forEach(({ label, value, detail, tone }, index) => {
+      const left = this.left + index * (width + gap);
+      this.tagged('P', () => {
+        const say = (text: string, font: string, points: number, color: string, y: number) =>
+          document
+            .font(font)
+            .fontSize(points)
+            .fillColor(color)
+            .text(pdfText(document, text), left + 9, y, { width: width - 9 });
+        say(label, pdfFonts.regular, size.small, soft, top);
+        say(value, pdfFonts.bold, value.length > 13 ? 11 : 14, ink, document.y + 1);
+        say(detail, pdfFonts.regular, size.small, soft, document.y + 1);
+      });
+      bottom = Math.max(bottom, document.y);
+      this.bar(left, top, document.y - top, toneColors[tone]);
+    });
+    document.x = this.left;
+    document.y = bottom + 8;
+  }
+
+  private bar(left: number, top: number, height: number, color: string): void {
+    this.document.markContent('Artifact', { type: 'Layout' });
+    this.document.rect(left, top, 2.5, height).fill(color);
+    this.document.endMarkedContent();
+  }
+
   verdict(sentences: readonly string[]): void {
     this.document.moveDown(0.3);
     const top = this.document.y;
@@ -83,9 +119,7 @@ export class PdfPage {
       });
     });
     if (this.document.y > top) {
-      this.document.markContent('Artifact', { type: 'Layout' });
-      this.document.rect(this.left, top, 3, this.document.y - top).fill('#0072B2');
-      this.document.endMarkedContent();
+      this.bar(this.left, top, this.document.y - top, toneColors.plain);
     }
     this.document.moveDown(0.6);
   }

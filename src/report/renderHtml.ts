@@ -66,7 +66,7 @@ export function pageOf({
 <meta name="viewport" content="width=device-width, initial-scale=1">
 <meta name="color-scheme" content="light dark">
 <meta name="referrer" content="no-referrer">
-${refreshS !== undefined ? `<meta http-equiv="refresh" content="${refreshS}">\n` : ''}<title>${escapeMarkup(title)}</title>
+${refreshS !== undefined ? `<noscript><meta http-equiv="refresh" content="${refreshS}"></noscript>\n` : ''}<title>${escapeMarkup(title)}</title>
 <style>${style}</style>
 </head>
 <body>

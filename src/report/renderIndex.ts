@@ -12,7 +12,8 @@ const refreshS = 60;
 const order = { look: 0, run: 1, good: 2, plain: 3 } as const;
 
 /**
- * The page of all runs: those that need a look first. It loads itself again while a run is live.
+ * The page of all runs: those that need a look first. It loads itself again while a run is live: by script, which a
+ * reader can stop (WCAG 2.2, 2.2.1), or where scripts are off by itself.
  *
  * @param createdUtc time of the newest data entry of any record; never the clock
  */
@@ -48,7 +49,7 @@ export function renderIndex(
     title: `${looks > 0 ? `(${looks}) ` : ''}kinetrail: runs`,
     body,
     style: templates.indexStyle,
-    ...(isLive ? { refreshS } : {}),
+    ...(isLive ? { refreshS, script: templates.indexScript } : {}),
   });
 }
 

@@ -41,6 +41,7 @@ export async function renderPdf(
   const page = new PdfPage(document);
   page.kicker(`${model.isFinal ? 'Final report' : 'Interim report'} ${model.reportId}`);
   page.heading(1, model.title);
+  page.highlights(model.highlights);
   page.verdict(model.verdict);
   page.facts(model.identity);
   for (const section of model.sections) {

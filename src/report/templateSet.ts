@@ -4,13 +4,14 @@ import { fileURLToPath } from 'node:url';
 import { ok, type Result } from '../base/result.js';
 import { requireSafeTemplate } from './requireSafeTemplate.js';
 
-/** The pages and styles that a report is drawn with. The script is always the program's own. */
+/** The pages and styles that a report is drawn with. The scripts are always the program's own. */
 export interface TemplateSet {
   readonly reportPage: string;
   readonly reportStyle: string;
   readonly indexPage: string;
   readonly indexStyle: string;
   readonly script: string;
+  readonly indexScript: string;
 }
 
 const names = { reportPage: 'report.html', reportStyle: 'report.css', indexPage: 'index.html', indexStyle: 'index.css' } as const;
@@ -27,6 +28,7 @@ export function shippedTemplates(): TemplateSet {
     indexPage: read(names.indexPage),
     indexStyle: read(names.indexStyle),
     script: read('report.js'),
+    indexScript: read('index.js'),
   };
   return shipped;
 }
