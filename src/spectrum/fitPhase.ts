@@ -33,8 +33,18 @@ export function fitPhase(
 ): PhaseFit {
   const data = phases.map(({ index, phaseRad, u }) => ({ x: index / pointCount - 0.5, phaseRad, u: Math.hypot(u, uLeastRad) }));
   if (data.length === 0) return { zeroRad: 0, firstRad: startRad, restRad: Number.NaN, groups: 0 };
-  return refine(data, scan(data, startRad, rangeRad));
+  // Lines at the edges may be folded in from beyond, with a phase of their own.
+  const inner = data.filter(({ x }) => Math.abs(x) < edge);
+  const used = inner.length >= 2 ? inner : data;
+  const fits = scan(used, startRad, rangeRad).map((start) => refine(used, start));
+  return fits.reduce((best, fit) => (fit.cost < best.cost ? fit : best));
 }
+
+/** Beyond this place, of half a spectrum either way, lines may be folded. */
+const edge = 0.475;
+/** Starts of the fine search that are tried, at least this far apart in slope. */
+const startsMax = 5;
+const startsApartRad = Math.PI / 4;
 
 type Datum = { readonly x: number; readonly phaseRad: number; readonly u: number };
 
@@ -42,13 +52,13 @@ function scan(
   data: readonly Datum[],
   startRad: number,
   [low, high]: readonly [number, number],
-): { zeroRad: number; firstRad: number } {
+): { zeroRad: number; firstRad: number }[] {
   const step = (2 * Math.PI) / 120;
   const [first, last] = [Math.ceil((low - startRad) / step), Math.floor((high - startRad) / step)];
   const pull = slopePull([low, high]);
   const weights = data.map(({ u }) => 1 / (u + 0.12));
   const total = weights.reduce((sum, value) => sum + value, 0);
-  let best = { zeroRad: 0, firstRad: startRad, score: Number.NEGATIVE_INFINITY };
+  const tried: { zeroRad: number; firstRad: number; score: number }[] = [];
   for (let k = first; k <= last; k += 1) {
     const firstRad = startRad + k * step;
     let [re, im] = [0, 0];
@@ -57,12 +67,22 @@ function scan(
       im += weights[index]! * Math.sin(phaseRad - firstRad * x);
     });
     const score = Math.hypot(re, im) / total - pull * Math.abs(firstRad);
-    if (score > best.score) best = { zeroRad: Math.atan2(im, re), firstRad, score };
+    tried.push({ zeroRad: Math.atan2(im, re), firstRad, score });
   }
-  return best;
+  tried.sort((p, q) => q.score - p.score);
+  const starts: typeof tried = [];
+  for (const one of tried) {
+    if (starts.length === startsMax || (starts[0] && one.score < starts[0].score - 0.15)) break;
+    if (starts.every(({ firstRad }) => Math.abs(firstRad - one.firstRad) >= startsApartRad)) starts.push(one);
+  }
+  return starts.length > 0 ? starts : [{ zeroRad: 0, firstRad: startRad }];
 }
 
-function refine(data: readonly Datum[], start: { zeroRad: number; firstRad: number }): PhaseFit {
+/** Scatter of local phases that costs little, and what a radian of slope costs. */
+const costRad = 0.03;
+const costPerRad = 0.02;
+
+function refine(data: readonly Datum[], start: { zeroRad: number; firstRad: number }): PhaseFit & { cost: number } {
   let { zeroRad, firstRad } = start;
   let restRad = 0;
   for (let turn = 0; turn < 40; turn += 1) {
@@ -91,7 +111,13 @@ function refine(data: readonly Datum[], start: { zeroRad: number; firstRad: numb
     restRad = Math.sqrt(rest2 / s);
     if (Math.abs(dZero) + Math.abs(dFirst) < 1e-7) break;
   }
-  return { zeroRad: wrap(zeroRad), firstRad, restRad, groups: data.length };
+  // Cauchy's own measure, at a scale that does not depend on the start: many good groups weigh more than one far off. Large slopes pay.
+  const cost = data.reduce((sum, { x, phaseRad, u }) => {
+    const scale = 2 * Math.hypot(u, costRad);
+    return sum + Math.log1p((wrap(phaseRad - zeroRad - firstRad * x) / scale) ** 2) / Math.sqrt(scale);
+  }, 0);
+  const total = data.reduce((sum, { u }) => sum + 1 / Math.sqrt(2 * Math.hypot(u, costRad)), 0);
+  return { zeroRad: wrap(zeroRad), firstRad, restRad, groups: data.length, cost: cost / total + costPerRad * Math.abs(firstRad) };
 }
 
 function weightedMedian(values: { readonly value: number; readonly weight: number }[]): number {

@@ -1,4 +1,5 @@
 import type { LineTails } from './lineTails.js';
+import { medianOf } from './medianOf.js';
 
 /** Lines are masked to where their tail has fallen to this many times the noise; the rest of the tail is taken out by its formula. */
 const fittedTail = 1;
@@ -52,8 +53,13 @@ export function maskHidden(
     rest[i + 1] = rest[i]! + (masked[i] === 1 ? 0 : real[i]! - tailAt(i) - level);
   }
   // Neighbouring points are alike to about two: the mean of m points has the noise of m / 2.
-  const limit = hiddenLevel * noise * Math.sqrt(2 / (2 * half + 1)) * (2 * half + 1);
+  const usual = hiddenLevel * noise * Math.sqrt(2 / (2 * half + 1)) * (2 * half + 1);
+  const sumAt = (i: number) => Math.abs(rest[i + half + 1]! - rest[i - half]!);
+  // Where the baseline so far does not follow, everything would stand out: then only what stands out of the rest counts.
+  const sample: number[] = [];
+  for (let i = half; i < n - half; i += Math.max(1, Math.floor(n / 6000))) if (masked[i] === 0) sample.push(sumAt(i));
+  const limit = Math.max(usual, sample.length > 0 ? 1.4826 * hiddenLevel * medianOf(sample) : 0);
   const marks: number[] = [];
-  for (let i = half; i < n - half; i += 1) if (Math.abs(rest[i + half + 1]! - rest[i - half]!) > limit) marks.push(i);
+  for (let i = half; i < n - half; i += 1) if (sumAt(i) > limit) marks.push(i);
   for (const i of marks) masked.fill(1, Math.max(0, i - 3 * half), Math.min(n, i + 3 * half + 1));
 }
