@@ -137,7 +137,7 @@
   help.className = 'note';
   const ns = 'http://www.w3.org/2000/svg';
   const svg = document.createElementNS(ns, 'svg');
-  svg.setAttribute('viewBox', '0 0 900 320');
+  svg.setAttribute('viewBox', '0 0 900 328');
   svg.setAttribute('role', 'img');
   svg.setAttribute('aria-label', 'Spectrum of the chosen time point');
   viewer.append(row, svg, words, help);

@@ -121,6 +121,7 @@ describe.skipIf(!hasBrowser)('in a real browser, offline', () => {
     expect(await viewer.locator('p').first().textContent()).toContain('ester/OCH2: singlet as expected');
     const first = () => viewer.locator('svg text').first().textContent();
     const whole = await first();
+    await viewer.locator('svg').scrollIntoViewIfNeeded();
     const box = (await viewer.locator('svg').boundingBox())!;
     await page.mouse.move(box.x + box.width * 0.4, box.y + 50);
     await page.mouse.down();

@@ -16,18 +16,19 @@ export function stripChart(
   const most = Math.max(...data, ...fit, 1e-12);
   const rest = data.map((value, index) => value - (fit[index] ?? 0));
   const lastPpm = firstPpm - (data.length - 1) * stepPpm;
+  // What is left over stands clear below the data, however noisy both are.
+  const restShift = Math.min(0, ...data) - 0.14 * most - Math.max(0, ...rest);
   const frame = makeFrame({
     widthPx,
     heightPx,
     x: { domain: [firstPpm, lastPpm], label: 'chemical shift / ppm', ticks: 4 },
-    y: { domain: [-0.42 * most, 1.08 * most], label: '', hidden: true },
+    y: { domain: [restShift + Math.min(0, ...rest) - 0.12 * most, 1.08 * most], label: '', hidden: true },
   });
   const x = (index: number) => Math.round(frame.x(firstPpm - index * stepPpm) * 100) / 100;
   const path = (values: readonly number[], shift = 0) =>
     line<number>()
       .x((_, index) => x(index))
       .y((value) => Math.round(frame.y(value + shift) * 100) / 100)([...values]) ?? '';
-  const restShift = -0.22 * most;
   const sticks = strip.sticks
     .filter(({ shiftPpm }) => shiftPpm <= firstPpm && shiftPpm >= lastPpm)
     .map(({ shiftPpm, height, signal: key }) => {
@@ -41,7 +42,7 @@ export function stripChart(
     `<path d="${path(data)}" fill="none" stroke="${ink.data}" stroke-width="1.1"/>`,
     `<path d="${path(fit)}" fill="none" stroke="${seriesStyles[1].color}" stroke-width="1.5" stroke-opacity="0.85"/>`,
     `<path d="${path(rest, restShift)}" fill="none" stroke="${seriesStyles[0].color}" stroke-width="0.9"/>`,
-    label(frame.plot.left + 2, frame.y(restShift) - 6, 'left over', 'start', ink.soft, 9.5),
+    label(frame.plot.left + 2, frame.y(restShift + Math.max(0, ...rest)) - 4, 'left over', 'start', ink.soft, 9.5),
   ];
   const description = `${signal.words.charAt(0).toUpperCase()}${signal.words.slice(1)}.`;
   return { svg: wrapSvg(id, widthPx, heightPx, title, description, parts), widthPx, heightPx, description };
