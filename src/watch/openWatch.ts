@@ -65,6 +65,7 @@ function begin(parts: WatchParts, lock: RecordLock): OpenWatch {
     takenMs: new Map(),
     series: new Map(),
     skippedTold: new Set(),
+    isIndexStale: false,
     isLastPass: false,
   };
   const close = async () => {

@@ -62,7 +62,8 @@ function isSame(a: Readonly<Record<string, string>>, b: Readonly<Record<string, 
   return names.length === Object.keys(b).length && names.every((name) => a[name] === b[name]);
 }
 
-async function isThere(port: FilePort, path: Path): Promise<boolean> {
+/** Whether a regular file has that name. */
+export async function isThere(port: FilePort, path: Path): Promise<boolean> {
   try {
     return (await port.stat(path)).kind === 'file';
   } catch (cause) {

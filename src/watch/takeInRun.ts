@@ -68,6 +68,7 @@ export async function takeInRun(session: WatchSession, listing: RunListing): Pro
   if (!mustWork && !(await isRenderDue(session, folder, memory))) return done(warnings, wait);
   const held = await holdRecord({ context, outputFolder: settings.outputFolder, names: listing.names, run });
   if (!held.ok) return done([...warnings, held.problem], wait);
+  session.isIndexStale = true;
   try {
     const worked = await work({ session, run, listing, held: held.value, config: config.value, plan, memory });
     return worked.ok ? done(warnings, { ...wait, ...worked.value }) : done([...warnings, worked.problem], wait);

@@ -1,7 +1,7 @@
 import { fail, ok, type Problem, type Result } from '../base/result.js';
 import { settleKey } from './planRun.js';
 import { hasRecordedRuns } from './recordedRuns.js';
-import { renderIndex } from './renderIndexPage.js';
+import { renderIndexPage } from './renderIndexPage.js';
 import { type RunListing, type ShareListing, shareProblem } from './shareListing.js';
 import { type RunOutcome, takeInRun } from './takeInRun.js';
 import { tellNews } from './tellNews.js';
@@ -34,7 +34,7 @@ export async function watchPass(session: WatchSession): Promise<Result<PassOutco
     if (!session.signal?.aborted) await tellNews(session, run, outcome);
     if (outcome.problems.some(({ code }) => code === 'disk-full')) break;
   }
-  const indexed = session.signal?.aborted ? ok(undefined) : await renderIndex(session, listing);
+  const indexed = session.signal?.aborted ? ok(undefined) : await renderIndexPage(session);
   if (!indexed.ok) problems.push(indexed.problem);
   return ok({ listing, runs: outcomes, problems });
 }

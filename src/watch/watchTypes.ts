@@ -67,6 +67,8 @@ export interface WatchSession {
   readonly series: Map<string, Series>;
   /** Links that were already told about. */
   readonly skippedTold: Set<string>;
+  /** Set when a record changed: then the page of all runs is drawn again. */
+  isIndexStale: boolean;
   /** Set in the last turn of a single pass: what still changes is set down as incomplete. */
   isLastPass: boolean;
   readonly onEvent: (event: WatchEvent) => void;

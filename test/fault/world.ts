@@ -165,7 +165,7 @@ export function rendererOf(port: FilePort, withReport = true) {
           }),
         }
       : {}),
-    index: async (runs) => runs.map(({ run }) => run).join('\n'),
+    index: (cards) => cards.map(({ run }) => run).join('\n'),
   });
 }
 

@@ -61,4 +61,13 @@ describe('a line of the ledger', () => {
     const broken = parseLedger(Buffer.concat([lines[0]!, lines[1]!, lines[3]!, lines[4]!]), 'l');
     expect(broken).toMatchObject({ ok: false, problem: { code: 'ledger-damaged', where: { line: 3 } } });
   });
+
+  it('an entry that calls itself another number is damage, even when hash and chain fit', () => {
+    const first = encodeLine(entry(1, firstPrev));
+    const second = encodeLine(entry(3, first.hash));
+    expect(parseLedger(Buffer.concat([first.bytes, second.bytes]), 'l')).toMatchObject({
+      ok: false,
+      problem: { code: 'ledger-damaged', where: { line: 2 } },
+    });
+  });
 });

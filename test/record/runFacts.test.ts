@@ -40,7 +40,13 @@ it('late, duplicate, replaced, vanished and unfinished files are exceptions or f
   const facts = await readRunFacts(run, world.disk.port);
   if (!facts.ok) throw new Error(facts.problem.message);
   const kinds = facts.value.exceptions.map(({ kind, file }) => `${kind} ${file}`);
-  expect(kinds.sort()).toEqual(['duplicate zz-copy.jdx', 'late late.jdx', 'replaced tp-002.jdx', 'vanished young.jdx']);
+  expect(kinds.sort()).toEqual([
+    'duplicate zz-copy.jdx',
+    'gap tp-002.jdx',
+    'late late.jdx',
+    'replaced tp-002.jdx',
+    'vanished young.jdx',
+  ]);
   const fates = facts.value.files.map(({ state }) => state).sort();
   expect(fates).toEqual(['duplicate', 'incomplete', 'measured', 'measured', 'measured', 'measured', 'replaced', 'vanished']);
 });
