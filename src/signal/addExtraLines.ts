@@ -60,7 +60,9 @@ export function addExtraLines(fitted: FittedRegion, misfit: number): FittedRegio
 
 /** Whether a new line explains most of what was left over: a fault of the shape is only shifted about by it. */
 function explainsMost(before: RegionFit, after: RegionFit): boolean {
-  const excess = before.chiSquare - before.whitened.length;
+  // Chi-square scatters by sqrt(2 n) by itself: that part of the excess no line need explain.
+  const count = before.whitened.length;
+  const excess = before.chiSquare - count - 2.5 * Math.sqrt(2 * count);
   return excess < 0 || before.chiSquare - after.chiSquare > explainedMin * excess;
 }
 

@@ -23,7 +23,7 @@ const strainedMisfit = 0.25;
 /** Below this a Lorentzian with its misfit allowed for is safer than a shape of many parts. */
 const plainMisfit = 0.03;
 /** With one signal alone nothing tells shape from impurity: this much is usual for a well-adjusted magnet (common practice). */
-const aloneMisfitMax = 0.005;
+const aloneMisfitMax = 0.002;
 
 /**
  * Learns the line shape of a spectrum from its strongest signals: a Lorentzian where that fits, else the sum of a few that fits
@@ -59,17 +59,18 @@ export function learnShape(
 }
 
 /**
- * The misfit that all strong signals share, and that is therefore the line shape's. One signal that a Lorentzian fits to the
- * noise proves the shape; what another leaves over is then its own affair. A weak signal proves only what it could have shown.
+ * The misfit that strong signals share, and that is therefore the line shape's. One signal that a Lorentzian fits to the noise
+ * proves the shape as far as it could have shown a fault; a misfit that one signal alone shows is mostly its own affair.
  */
 function sharedMisfit(fits: readonly FittedRegion[]): number {
-  let least = { bound: Number.POSITIVE_INFINITY, misfit: 0 };
-  for (const fitted of fits) {
-    const misfit = worstMisfit(fitted);
-    const bound = Math.max(misfit, ...fitted.region.targets.map((target) => detectableMisfit(fitted, target)));
-    if (bound < least.bound) least = { bound, misfit };
-  }
-  return fits.length > 1 ? least.misfit : Math.min(least.misfit, aloneMisfitMax);
+  const misfits = fits.map(worstMisfit);
+  const shown = misfits.filter((misfit) => misfit > 0);
+  const proven = fits.flatMap((fitted, k) =>
+    misfits[k] === 0 ? [Math.max(...fitted.region.targets.map((target) => detectableMisfit(fitted, target)))] : [],
+  );
+  const least = Math.min(...shown, Number.POSITIVE_INFINITY);
+  if (shown.length === 0 || Math.min(...proven, Number.POSITIVE_INFINITY) < least) return 0;
+  return shown.length > 1 ? least : Math.min(least, aloneMisfitMax);
 }
 
 /** The largest relative misfit among the signals of a region. */
