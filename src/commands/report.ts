@@ -1,11 +1,13 @@
 import { resolve } from 'node:path';
 import type { ArgumentsCamelCase, CommandModule } from 'yargs';
-import { replaceFile } from '../record/durable.js';
-import { realFilePort } from '../record/filePort.js';
-import { outputProblem } from '../record/recordProblem.js';
+import { realContext } from '../record/recordContext.js';
 import { readRunFacts } from '../record/runFacts.js';
 import { renderReport } from '../report/renderReport.js';
 import { readTemplates, shippedTemplates } from '../report/templateSet.js';
+import { renderSeriesCsv } from '../series/renderSeriesCsv.js';
+import { renderSeriesJson } from '../series/renderSeriesJson.js';
+import { renderAgain } from '../watch/amendRun.js';
+import { makeRecordRenderer } from '../watch/recordRenderer.js';
 import { exitCodes } from './exitCodes.js';
 import { printProblem } from './printProblem.js';
 import { escapeForTerminal } from './terminalText.js';
@@ -43,19 +45,18 @@ async function report({ run, templates, json }: ArgumentsCamelCase<ReportArgumen
     printProblem(pages.problem);
     return exitCodes.usage;
   }
-  const facts = await readRunFacts(folder);
+  const context = realContext();
+  const renderer = makeRecordRenderer(context.port, {
+    seriesJson: renderSeriesJson,
+    seriesCsv: renderSeriesCsv,
+    report: (facts) => renderReport(facts, pages.value),
+  });
+  // Through the record: what is written is noted there with its hash, or `verify` could not tell it from a forgery.
+  const rendered = await renderAgain({ context, renderer, renderedMs: new Map(), series: new Map() }, folder);
+  const facts = rendered.ok ? await readRunFacts(folder) : rendered;
   if (!facts.ok) {
     printProblem(facts.problem);
-    return facts.problem.code === 'record-missing' ? exitCodes.usage : exitCodeOf(facts.problem);
-  }
-  const { html, pdf } = await renderReport(facts.value, pages.value);
-  try {
-    await replaceFile(realFilePort, folder, 'report.html', Buffer.from(html));
-    await replaceFile(realFilePort, folder, 'report.pdf', pdf);
-  } catch (cause) {
-    const problem = outputProblem(cause, folder);
-    printProblem(problem);
-    return exitCodeOf(problem);
+    return exitCodeOf(facts.problem);
   }
   const { head } = facts.value;
   process.stdout.write(

@@ -55,7 +55,11 @@ export async function amendRun(deps: AmendDeps, folder: Path, request: AmendRequ
 }
 
 /** A watcher holds a record only while it writes: waiting a little is enough. */
-async function holdPatiently(deps: AmendDeps, folder: Path, adoptsObjects: boolean): Promise<Result<HeldRecord>> {
+async function holdPatiently(
+  deps: RenderDeps & { readonly signal?: AbortSignal },
+  folder: Path,
+  adoptsObjects: boolean,
+): Promise<Result<HeldRecord>> {
   const { context } = deps;
   const until = context.clock.monotonicMs() + waitForRecordMs;
   const run = pathText(folder).split('/').at(-1) ?? '';
@@ -126,7 +130,7 @@ function usage(code: string, message: string, hint?: string): Problem {
  *
  * @errors record-missing, record-held, those of the record and of rendering
  */
-export async function renderAgain(deps: AmendDeps, folder: Path): Promise<Result<void>> {
+export async function renderAgain(deps: RenderDeps, folder: Path): Promise<Result<void>> {
   const present = await requireLedger(deps, folder);
   if (!present.ok) return present;
   const held = await holdPatiently(deps, folder, false);
@@ -138,7 +142,7 @@ export async function renderAgain(deps: AmendDeps, folder: Path): Promise<Result
   }
 }
 
-async function requireLedger({ context }: AmendDeps, folder: Path): Promise<Result<void>> {
+async function requireLedger({ context }: RenderDeps, folder: Path): Promise<Result<void>> {
   try {
     if ((await readLedgerBytes(context.port, folder)) !== undefined) return ok(undefined);
   } catch (cause) {
