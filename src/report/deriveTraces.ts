@@ -67,14 +67,13 @@ function packOverview({
   return { firstPpm, lastPpm, low: pack(lows, least, most), high: pack(highs, least, most) };
 }
 
+const pairs = Array.from({ length: 4096 }, (_, level) => `${digits[level >> 6]}${digits[level & 63]}`);
+
 function pack(values: readonly number[], low: number, high: number): string {
-  const span = high - low;
-  return values
-    .map((value) => {
-      const level = Math.max(0, Math.min(4095, Math.round((4095 * (value - low)) / span)));
-      return `${digits[level >> 6]}${digits[level & 63]}`;
-    })
-    .join('');
+  const factor = 4095 / (high - low);
+  let text = '';
+  for (const value of values) text += pairs[Math.max(0, Math.min(4095, Math.round(factor * (value - low))))];
+  return text;
 }
 
 function sizeOf(point: TracePoint): number {

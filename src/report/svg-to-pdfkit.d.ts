@@ -1,9 +1,0 @@
-declare module 'svg-to-pdfkit' {
-  export default function SVGtoPDF(
-    document: PDFKit.PDFDocument,
-    svg: string,
-    x: number,
-    y: number,
-    options?: { width?: number; height?: number; assumePt?: boolean; fontCallback?: () => string },
-  ): void;
-}
