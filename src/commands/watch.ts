@@ -1,15 +1,18 @@
 import { resolve } from 'node:path';
 import type { ArgumentsCamelCase, CommandModule } from 'yargs';
-import { realContext } from '../record/recordContext.js';
+import { type RecordContext, realContext } from '../record/recordContext.js';
+import { targetsOf } from '../tell/targetsOf.js';
 import { type FoundSite, findSite } from '../watch/findSite.js';
 import { forkShareReader } from '../watch/forkShareReader.js';
+import { makeTell } from '../watch/makeTell.js';
 import { makeMeasurePool } from '../watch/measurePool.js';
 import { type OpenWatch, openWatch } from '../watch/openWatch.js';
 import { recordRenderer } from '../watch/recordRenderer.js';
 import { watchOnce } from '../watch/watchOnce.js';
 import { watchShare } from '../watch/watchShare.js';
-import type { WatchSettings } from '../watch/watchTypes.js';
+import type { WatchEvent, WatchSettings } from '../watch/watchTypes.js';
 import { exitCodes } from './exitCodes.js';
+import { makeTeller } from './makeTeller.js';
 import { printProblem } from './printProblem.js';
 import { loadMethod } from './readInput.js';
 import { stopOnSignals } from './stopOnSignals.js';
@@ -91,6 +94,7 @@ async function watch(args: ArgumentsCamelCase<WatchArguments>): Promise<number> 
   const settings = settingsOf(args, share, site.value);
   const stop = stopOnSignals();
   const printer = makeWatchPrinter({ isOnce: args.once });
+  const tell = makeTeller(context, site.value?.file);
   const opened = await openWatch({
     context,
     settings,
@@ -98,6 +102,7 @@ async function watch(args: ArgumentsCamelCase<WatchArguments>): Promise<number> 
     measurer: makeMeasurePool({ workers: workersOf(args, site.value), timeoutMs: measureTimeoutMs, heapMegabytes }),
     renderer: recordRenderer(context.port),
     onEvent: printer.print,
+    ...(tell !== undefined ? { tell } : {}),
     signal: stop.signal,
   });
   if (!opened.ok) {
@@ -147,6 +152,12 @@ function settingsOf(args: WatchArguments, share: string, site: FoundSite | undef
     ...(site?.file.silentAfterMin !== undefined ? { silentAfterMs: site.file.silentAfterMin * 60_000 } : {}),
     ...(site !== undefined ? { site } : {}),
   };
+}
+
+/** Nothing is sent anywhere unless the site file says so. */
+function tellOf(context: RecordContext, site: FoundSite | undefined, share: string, onEvent: (event: WatchEvent) => void) {
+  const entries = site?.file.tell ?? [];
+  return entries.length > 0 ? { tell: makeTell({ context, targets: targetsOf(entries, process.env), share, onEvent }) } : {};
 }
 
 function workersOf(args: WatchArguments, site: FoundSite | undefined): number {

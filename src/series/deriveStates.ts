@@ -1,4 +1,4 @@
-import type { Method, RunFile } from '../method/method.js';
+import type { Limit, Method, RunFile } from '../method/method.js';
 import type { RunState, SeriesPoint } from './series.js';
 
 const stalledPoints = 5;
@@ -18,6 +18,18 @@ export function deriveStates(points: readonly SeriesPoint[], method: Method, run
   if (runFile.final === true) states.push({ state: 'final', since: 'run', evidence: 'the run file says that the run is final' });
   if (states.length > 0) return states;
   return [{ state: 'running', since: points[0]?.sha256 ?? 'run', evidence: `${usable.length} usable time points` }];
+}
+
+/** A state that holds now, dated back to the point since which it has held without a break: a night is not told of it twice. */
+function lasting(
+  points: readonly SeriesPoint[],
+  find: (points: readonly SeriesPoint[]) => RunState | undefined,
+): RunState | undefined {
+  const now = find(points);
+  if (!now) return undefined;
+  let count = points.length;
+  while (count > 1 && find(points.slice(0, count - 1))) count -= 1;
+  return { ...now, since: points[count - 1]!.sha256 };
 }
 
 /** The lower 95 % bound lies above the target, on as many points in a row as the method asks. */
@@ -66,29 +78,28 @@ function slopeOf(points: readonly SeriesPoint[]): { slope: number; u: number } {
   return { slope, u: 1 / Math.sqrt(sxx) };
 }
 
-/** A limit of the method is broken at the last point, beyond its 95 % bound, once the target is reached or no target is set. */
+/** Limits of the method that are broken at the last point, each since the point at which it began. */
 function limitsBroken(points: readonly SeriesPoint[], method: Method): RunState[] {
+  return method.limits.flatMap((limit) => lasting(points, (part) => brokenLimit(part, method, limit)) ?? []);
+}
+
+/** Beyond the 95 % bound, and for the starting material only once the target is reached or no target is set. */
+function brokenLimit(points: readonly SeriesPoint[], method: Method, limit: Limit): RunState | undefined {
   const last = points.at(-1);
-  if (!last?.amounts) return [];
-  const { amounts } = last;
-  const conversion = amounts.conversion;
-  const isEnd =
-    method.conversion?.target === undefined || (conversion !== undefined && conversion.value >= method.conversion.target);
-  return method.limits.flatMap((limit) => {
-    const found = limit.quantity === 'mole-fraction' ? amounts.species[limit.species] : undefined;
-    const isOfStart = limit.species === method.conversion?.of;
-    if (found?.moleFraction === undefined || (isOfStart && !isEnd)) return [];
-    const [value, u] = [found.moleFraction, found.moleFractionU ?? 0];
-    const isOver = limit.atMost !== undefined && value - 1.645 * u > limit.atMost;
-    const isUnder = limit.atLeast !== undefined && isEnd && value + 1.645 * u < limit.atLeast;
-    if (!isOver && !isUnder) return [];
-    const bound = isOver ? `above ${limit.atMost}` : `below ${limit.atLeast}`;
-    return [
-      {
-        state: 'limit-broken' as const,
-        since: last.sha256,
-        evidence: `mole fraction of ${limit.species} is ${value.toFixed(4)}, ${bound} beyond its 95 % interval`,
-      },
-    ];
-  });
+  const found = limit.quantity === 'mole-fraction' ? last?.amounts?.species[limit.species] : undefined;
+  if (!last?.amounts || found?.moleFraction === undefined) return undefined;
+  const { conversion } = last.amounts;
+  const target = method.conversion?.target;
+  const isEnd = target === undefined || (conversion !== undefined && conversion.value >= target);
+  if (limit.species === method.conversion?.of && !isEnd) return undefined;
+  const [value, u] = [found.moleFraction, found.moleFractionU ?? 0];
+  const isOver = limit.atMost !== undefined && value - 1.645 * u > limit.atMost;
+  const isUnder = limit.atLeast !== undefined && isEnd && value + 1.645 * u < limit.atLeast;
+  if (!isOver && !isUnder) return undefined;
+  const bound = isOver ? `above ${limit.atMost}` : `below ${limit.atLeast}`;
+  return {
+    state: 'limit-broken',
+    since: last.sha256,
+    evidence: `mole fraction of ${limit.species} is ${value.toFixed(4)}, ${bound} beyond its 95 % interval`,
+  };
 }
