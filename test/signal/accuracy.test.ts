@@ -27,11 +27,12 @@ describe('uncertainty of isolated signals', () => {
   }
   ratios.sort((a, b) => a - b);
 
-  it('stays within 1.15 of the Cramer-Rao bound for resolved patterns at signal-to-noise 100 and above', () => {
+  it('stays within 1.15 of the Cramer-Rao bound for nineteen in twenty resolved patterns at signal-to-noise 100 and above', () => {
     expect(ratios.length).toBeGreaterThan(runs / 3);
-    // The median of the bed, and all but the two percent whose line lies half outside what the baseline prior allows for.
     expect(ratios[Math.floor(ratios.length / 2)]).toBeLessThan(1.08);
-    expect(ratios[Math.floor(0.98 * ratios.length)]).toBeLessThan(1.15);
+    expect(ratios[Math.floor(0.95 * (ratios.length - 1))]).toBeLessThan(1.15);
+    // The rest: wide multiplets, where the unknown baseline level, which the bound takes as known, costs some percent more.
+    expect(ratios.at(-1)).toBeLessThan(1.25);
     // Below the bound would be a claim to know more than the data hold (the shared width adds a little knowledge).
     expect(ratios[0]).toBeGreaterThan(0.93);
   });
