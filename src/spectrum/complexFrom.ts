@@ -19,6 +19,8 @@ export interface Raw {
   readonly analysisIndependent: number;
   readonly onsetPoints?: number;
   /** Where time zero may lie, points from the start of the FID. */
+  /** A two-channel FID: its first point after the onset, as it would stand in the spectrum with full weight. */
+  readonly firstPoint?: { readonly real: number; readonly imag: number };
   /** Points before zero filling: what noise is independent in. */
   readonly independentPoints: number;
   readonly originRange?: readonly [number, number];
@@ -84,6 +86,7 @@ function fromFid(acquisition: Acquisition, processing: Processing, givenOnset: n
     analysisBroadeningHz: analysisHz - lineBroadeningHz,
     onsetPoints,
     originRange: onset.rangePoints,
+    ...(isReal ? {} : { firstPoint: { real: 2 * dwellS * real[onsetPoints]!, imag: 2 * dwellS * imag[onsetPoints]! } }),
     turnsThrough: keepsEarly,
     independentPoints: isReal ? kept / 2 : kept,
     noiseCorrelation: noiseCorrelationOf(kept, points, Math.PI * lineBroadeningHz * dwellS),

@@ -2,6 +2,8 @@ import { smoothBanded } from './smoothBanded.js';
 
 const turns = 3;
 const samplesPerBin = 48;
+/** The lowest points of a bin scatter by about a third of the noise: only what lies clearly above them is held. */
+const slack = 1.5;
 /** Mean of the lowest quarter of standard normal values. */
 const lowestQuarter = -1.271;
 
@@ -37,7 +39,7 @@ export function holdBelow(
   for (let turn = 0; turn < turns; turn += 1) {
     let isHeld = true;
     for (let bin = 0; bin < m; bin += 1) {
-      if (result[bin]! <= ceilings[bin]! + 0.5 * noise) continue;
+      if (result[bin]! <= ceilings[bin]! + slack * noise) continue;
       held[bin] = ceilings[bin]!;
       pull[bin] = typical;
       isHeld = false;

@@ -3,6 +3,7 @@ import { fail, ok, type Problem, type Result } from '../base/result.js';
 import type { Acquisition } from '../decode/acquisition.js';
 import type { Method } from '../method/method.js';
 import { chooseReference } from './chooseReference.js';
+import { completeStart } from './completeStart.js';
 import { complexFrom, type Raw } from './complexFrom.js';
 import { expectationsOf } from './expectations.js';
 import { findLines } from './findLines.js';
@@ -36,7 +37,7 @@ export function makeSpectrum(acquisition: Acquisition, method: Method): Result<S
   if (peaks.length === 0)
     return fail(problem('no-signal', 'no line stands out of the noise by a factor of 8', 'Check tube, shim, lock and receiver.'));
 
-  const phased = phaseSpectrum(raw, found, method.processing.phase);
+  const phased = phaseSpectrum({ ...raw, spectrum: completeStart(raw, found.fit.firstRad) }, found, method.processing.phase);
   const isFlat = method.processing.baseline === 'none';
   const flat = flattenBaseline(phased.spectrum.real, lineTails(raw, found), isFlat, raw.independentPoints);
 
