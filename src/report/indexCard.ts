@@ -49,7 +49,7 @@ export function indexCard(
     href: `${names.map(encodeName).join('/')}/report.html`,
     title: series.method.title,
     ...state,
-    conversion: conversion ? formatPercent(conversion.value, conversion.u) : 'not stated',
+    conversion: conversion ? formatPercent(conversion.value, conversion.u) : 'not determined',
     lastPoint: last ? `${formatTime(last.acquired)}, ${formatElapsed(last.elapsedS)} after the start` : 'none yet',
     points: `${usable.length} used`,
     flags: remarks.join(', '),
