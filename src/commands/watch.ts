@@ -1,16 +1,14 @@
 import { resolve } from 'node:path';
 import type { ArgumentsCamelCase, CommandModule } from 'yargs';
-import { type RecordContext, realContext } from '../record/recordContext.js';
-import { targetsOf } from '../tell/targetsOf.js';
+import { realContext } from '../record/recordContext.js';
 import { type FoundSite, findSite } from '../watch/findSite.js';
 import { forkShareReader } from '../watch/forkShareReader.js';
-import { makeTell } from '../watch/makeTell.js';
 import { makeMeasurePool } from '../watch/measurePool.js';
 import { type OpenWatch, openWatch } from '../watch/openWatch.js';
 import { recordRenderer } from '../watch/recordRenderer.js';
 import { watchOnce } from '../watch/watchOnce.js';
 import { watchShare } from '../watch/watchShare.js';
-import type { WatchEvent, WatchSettings } from '../watch/watchTypes.js';
+import type { WatchSettings } from '../watch/watchTypes.js';
 import { exitCodes } from './exitCodes.js';
 import { makeTeller } from './makeTeller.js';
 import { printProblem } from './printProblem.js';
@@ -152,12 +150,6 @@ function settingsOf(args: WatchArguments, share: string, site: FoundSite | undef
     ...(site?.file.silentAfterMin !== undefined ? { silentAfterMs: site.file.silentAfterMin * 60_000 } : {}),
     ...(site !== undefined ? { site } : {}),
   };
-}
-
-/** Nothing is sent anywhere unless the site file says so. */
-function tellOf(context: RecordContext, site: FoundSite | undefined, share: string, onEvent: (event: WatchEvent) => void) {
-  const entries = site?.file.tell ?? [];
-  return entries.length > 0 ? { tell: makeTell({ context, targets: targetsOf(entries, process.env), share, onEvent }) } : {};
 }
 
 function workersOf(args: WatchArguments, site: FoundSite | undefined): number {

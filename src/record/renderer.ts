@@ -23,6 +23,8 @@ export interface Derived {
 export interface Renderer {
   /** `undefined` when the record holds nothing to derive from. */
   derive(folder: Path, lines: readonly LedgerLine[]): Promise<Result<Derived | undefined>>;
+  /** The series alone, without drawing anything. */
+  series?(folder: Path, lines: readonly LedgerLine[]): Promise<Result<Series>>;
   /** The page of all runs. */
   index?(runs: readonly RunOnIndex[]): Promise<Result<Uint8Array>>;
 }

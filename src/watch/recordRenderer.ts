@@ -55,6 +55,10 @@ export function makeRecordRenderer(port: FilePort, parts: RenderParts): Renderer
       files.set('report.pdf', report.value.pdf);
       return ok({ files, series });
     },
+    series: async (folder, lines) => {
+      const facts = await factsOf(port, folder, lines, derive);
+      return facts.ok ? ok(facts.value.series) : facts;
+    },
     ...(index !== undefined ? { index: (runs) => drawIndex(port, runs, cards, index, derive) } : {}),
   };
 }
