@@ -49,7 +49,7 @@ export function candidatePatterns(peaks: readonly Peak[], listedHz: readonly num
     add([n], [spread / n], middle);
     // The outermost lines of a septet hold 1/64 each and hide in noise.
     if (n >= 4) add([n], [spread / (n - 2)], middle);
-    for (const j of listedHz) if (Math.abs(n * j - spread) > 0.3) add([n], [j], middle);
+    for (const j of listedHz) if (Math.abs(spread - n * j) > 0.3) add([n], [j], middle);
   }
   const gaps = peaks.slice(1, 5).map((peak) => first - peak.shiftHz);
   const smalls = [...gaps, ...peaks.slice(-3, -1).map((peak) => peak.shiftHz - last), 0.8 * widthHz, 1.4 * widthHz];

@@ -42,24 +42,29 @@ const bendRad = 0.01;
  */
 export function findLines(raw: Raw, slopeRangeRad: readonly [number, number]): FoundLines {
   const { analysis } = raw;
-  const n = analysis.real.length;
-  const perIndependent = Math.max(1, n / raw.analysisIndependent);
-  const slopeOf = (slopeRad: number): SlopeOf => ({ step: slopeRad / n, turnsThrough: raw.turnsThrough });
+  const pointCount = analysis.real.length;
+  const perIndependent = Math.max(1, pointCount / raw.analysisIndependent);
+  const slopeOf = (slopeRad: number): SlopeOf => ({ step: slopeRad / pointCount, turnsThrough: raw.turnsThrough });
   const { peaks: tops, noise } = findPeaks(analysis, peakCountMax, level, perIndependent);
   // An onset seen in time leaves a few turns at most: the groups themselves tell better than single tops, which tails of giants turn.
   const isWide = slopeRangeRad[1] - slopeRangeRad[0] > 2 * Math.PI * wideTurns;
   let slopeRad = isWide ? scanFirstOrder(analysis, tops, noise, slopeRangeRad).slopeRad : 0;
   let local = localPhases(analysis, tops, noise, slopeOf(slopeRad), 0);
-  let fit = fitPhase(local, n, slopeRad, slopeRangeRad);
+  let fit = fitPhase(local, pointCount, slopeRad, slopeRangeRad);
   const peaks = addHidden(analysis, tops, local, noise, slopeOf(isWide ? fit.firstRad : slopeRad), perIndependent);
   for (let turn = 0; turn < 3; turn += 1) {
     const extent = Math.max(0, ...local.map(({ group }) => group.to - group.from));
-    const isSettled = Math.abs(fit.firstRad - slopeRad) * (extent / n) < bendRad;
+    const isSettled = Math.abs(fit.firstRad - slopeRad) * (extent / pointCount) < bendRad;
     if (isSettled && (turn > 0 || peaks === tops)) break;
     // The first look, with giants in the way, only serves to take them out.
     if (turn > 0 || isWide) slopeRad = fit.firstRad;
     local = localPhases(analysis, peaks, noise, slopeOf(slopeRad), additions);
-    fit = fitPhase(local, n, slopeRad, turn === 0 ? slopeRangeRad : [slopeRad - 0.6 * Math.PI, slopeRad + 0.6 * Math.PI]);
+    fit = fitPhase(
+      local,
+      pointCount,
+      slopeRad,
+      turn === 0 ? slopeRangeRad : [slopeRad - 0.6 * Math.PI, slopeRad + 0.6 * Math.PI],
+    );
   }
   if (raw.turnsThrough && local.length > 0) fit = lessNegative(analysis, peaks, noise, fit);
   return { peaks, noise, local, fit, slope: slopeOf(fit.firstRad) };
