@@ -4,7 +4,7 @@ import type { SpectrumName } from './shareListing.js';
 import { statText } from './statCache.js';
 
 /** Codes of refusals that another try may lift although the file does not change. */
-const liftableCodes = new Set(['unreadable', 'file-changing']);
+const liftableCodes = new Set(['unreadable', 'file-changing', 'still-changing']);
 /** Codes whose cause may be gone with another version of the program. */
 const versionCodes = new Set(['program-fault', 'measuring-died']);
 
@@ -20,8 +20,8 @@ export function isKnown(memory: RunMemory, spectrum: SpectrumName, program: stri
 function isLasting({ state, flags, engine }: StampedInput, program: string): boolean {
   if (state === 'vanished') return false;
   const codes = (flags ?? []).map(({ code }) => code);
-  if (state !== 'set-aside') return true;
   if (codes.some((code) => liftableCodes.has(code))) return false;
+  if (state !== 'set-aside') return true;
   return engine === program || !codes.some((code) => versionCodes.has(code));
 }
 

@@ -129,10 +129,24 @@ async function makeOutput(port: FilePort, folder: string): Promise<Result<void>>
   try {
     const { ancestor, missing } = await deepestExisting(port, folder);
     await makeFolders(port, ancestor, missing);
+    await syncAncestors(port, ancestor);
     const stat = await port.statThrough(folder);
     if (stat.kind === 'folder') return ok(undefined);
     return fail({ code: 'output-not-a-folder', area: 'usage', message: `${folder} is not a folder`, retry: 'never' });
   } catch (cause) {
     return fail(outputProblem(cause, folder));
+  }
+}
+
+/**
+ * An earlier start may have made some of these folders and died before it synced them. Folders of other owners that cannot be
+ * opened were not made by us.
+ */
+async function syncAncestors(port: FilePort, folder: string): Promise<void> {
+  for (let path = dirname(folder); ; path = dirname(path)) {
+    await port.syncFolder(path).catch((cause: unknown) => {
+      if (systemCode(cause) === undefined) throw cause;
+    });
+    if (dirname(path) === path) return;
   }
 }

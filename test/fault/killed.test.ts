@@ -94,6 +94,21 @@ describe('a watcher that is killed', () => {
     await expectRecovered(world, expected, 'killed before the append');
   });
 
+  it('F05: killed, started again, and then without power keeps what the second start acknowledged', {
+    timeout: 120_000,
+  }, async () => {
+    const expected = await undisturbed();
+    for (let n = 1; ; n += 1) {
+      const world = makeWorld(files);
+      const { isKilled } = await passWith(world, faultAt(n, { kind: 'kill', when: 'before' }));
+      if (!isKilled) break;
+      expect((await pass(world)).ok).toBe(true);
+      world.disk = world.disk.afterPowerCut();
+      expect(failures(await verify(world)), `killed before call ${n}`).toEqual([]);
+      expect(lasting(world.disk), `killed before call ${n}`).toEqual(expected);
+    }
+  });
+
   it('F05: a line that was written but not synced is synced by whoever opens the ledger next, before anything is built on it', async () => {
     const world = makeWorld(files);
     let appends = 0;

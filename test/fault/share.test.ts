@@ -1,4 +1,5 @@
 import { describe, expect, it } from 'vitest';
+import { sha256 } from '../../src/base/sha256.js';
 import { makeFaultyPort } from './faultyPort.js';
 import {
   failures,
@@ -204,6 +205,23 @@ describe('files that are not at rest', () => {
     await pass(world);
     expect(fateOf(world, 'tp-001.jdx')).toMatchObject({ state: 'measured' });
     expect(inputsOf(world).filter(({ state }) => state === 'measured')).toHaveLength(3);
+  });
+
+  it('F32: other bytes of the same size and time, put there between the two readings, are found by the hash', async () => {
+    const world = makeWorld(files);
+    const before = files['BX-0417/tp-001.jdx']!;
+    const after = before.replace('point 1', 'point X');
+    let reads = 0;
+    const sharePort = makeFaultyPort(world.disk.port, ({ operation, path }) => {
+      if (operation !== 'read' || !path.endsWith('tp-001.jdx') || ++reads !== 3) return undefined;
+      return { kind: 'meanwhile', act: () => world.disk.write('/share/BX-0417/tp-001.jdx', after, old) };
+    });
+    await pass(world, { sharePort });
+    await pass(world);
+    const hashes = inputsOf(world).flatMap(({ file, sha256: hash }) =>
+      file === 'tp-001.jdx' && hash !== undefined ? [hash] : [],
+    );
+    expect(hashes).toEqual([sha256(after)]);
   });
 
   it('F23: an old stat and late visibility only delay', async () => {
