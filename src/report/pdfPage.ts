@@ -1,7 +1,7 @@
 import { drawSvg } from './drawSvg.js';
 import { pdfFonts } from './pdfFonts.js';
 import { PdfTable } from './pdfTable.js';
-import { pdfText } from './pdfText.js';
+import { captionOf, pdfText } from './pdfText.js';
 import type { Block, Highlight } from './reportModel.js';
 
 type Document = PDFKit.PDFDocument;
@@ -243,8 +243,4 @@ export class PdfPage {
       captionOf(block),
     );
   }
-}
-
-function captionOf({ title, description }: Figure): string {
-  return `${title}. ${description}`;
 }

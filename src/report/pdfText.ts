@@ -19,3 +19,8 @@ export function pdfText(document: PDFKit.PDFDocument, source: string): string {
     })
     .join('');
 }
+
+/** The caption under a figure, and its alternative text. */
+export function captionOf({ title, description }: { readonly title: string; readonly description: string }): string {
+  return `${title}. ${description}`;
+}

@@ -6,6 +6,8 @@ import { trinomialLines } from '../pattern/trinomialLines.js';
 import { makeRandom, type Random } from './random.js';
 import { withSatellites } from './speciesLines.js';
 import type { FidLine } from './synthesizeFid.js';
+import { acquisitionOf } from './testBedAcquisition.js';
+import { corrupt, drawHump } from './testBedDisturbances.js';
 import { type BedShape, type BedTiming, bedFid } from './testBedFid.js';
 
 /** One multiplet of a test case. */
@@ -225,26 +227,6 @@ function methodOf(signals: readonly MethodSignal[]): Method {
   };
 }
 
-/** A hump of a few very broad signals, hundreds of hertz wide and more. */
-function drawHump(random: Random, observeMhz: number): FidLine[] {
-  const area = random.between(0.5, 4);
-  return [0, 1, 2].map(() => ({
-    shiftPpm: random.between(2, 8),
-    area: area * random.between(0.3, 1),
-    widthHz: random.between(1.5, 4) * observeMhz,
-  }));
-}
-
-/** Falsifies the first points by up to a third of the first one. */
-function corrupt({ real, imag }: { real: Float64Array; imag: Float64Array }, count: number, random: Random): void {
-  const size = Math.hypot(real[0]!, imag[0]!);
-  for (let k = 0; k < count; k += 1) {
-    const fall = Math.exp(-k / 1.5) / 3;
-    real[k] = real[k]! + size * fall * random.between(-1, 1);
-    imag[k] = imag[k]! + size * fall * random.between(-1, 1);
-  }
-}
-
 /** Noise per point so that the tallest line but water reaches the wished ratio under a window matched to the acquisition. */
 function noiseFor(groups: readonly BedGroup[], signalToNoise: number, points: number, dwellS: number): number {
   const windowHz = 0.6 / (points * dwellS);
@@ -254,25 +236,4 @@ function noiseFor(groups: readonly BedGroup[], signalToNoise: number, points: nu
   const decay = 2 * Math.PI * windowHz * dwellS;
   const power = (1 - Math.exp(-decay * points)) / decay;
   return tallest / signalToNoise / (2 * dwellS * Math.sqrt(power));
-}
-
-function acquisitionOf(
-  seed: number,
-  clean: { real: Float64Array; imag: Float64Array },
-  noise: { real: Float64Array; imag: Float64Array },
-  { observeMhz, dwellS }: BedTiming,
-): Acquisition {
-  return {
-    kind: 'fid',
-    title: `test bed ${seed}`,
-    nucleus: '1H',
-    observeMhz,
-    real: clean.real.map((value, k) => value + noise.real[k]!),
-    imag: clean.imag.map((value, k) => value + noise.imag[k]!),
-    dwellS,
-    spectralWidthHz: 1 / dwellS,
-    acquiredSource: 'none',
-    dataSha256: '',
-    flags: [],
-  };
 }

@@ -1,8 +1,8 @@
+import { bestPhase } from './bestPhase.js';
 import { choleskySolve } from './choleskySolve.js';
 import type { ComplexSpectrum } from './complexSpectrum.js';
 import type { Peak } from './findPeaks.js';
 import type { PeakGroup } from './groupPeaks.js';
-import { medianOf } from './medianOf.js';
 
 /** One column of a group's model: a power of the complex Lorentzian, times i or not. */
 export interface LineColumn {
@@ -232,33 +232,4 @@ function accumulate(
     const row = a * size;
     for (let b = 0; b <= a; b += 1) gram[row + b] = gram[row + b]! + ar * re[b]! + ai * im[b]!;
   }
-}
-
-function bestPhase(
-  u: Float64Array,
-  v: Float64Array,
-  p: Float64Array,
-  q: Float64Array,
-  points: readonly { readonly x: number; readonly y: number }[],
-) {
-  let [uu, uv, vv] = [0, 0, 0];
-  for (let a = 0; a < u.length; a += 1) {
-    uu += u[a]! * p[a]!;
-    uv += u[a]! * q[a]!;
-    vv += v[a]! * q[a]!;
-  }
-  const angle = 0.5 * Math.atan2(2 * uv, uu - vv);
-  const [c, s] = [Math.cos(angle), Math.sin(angle)];
-  // In absorption lines point up: the cubes of what stands off the middle say so, however lines overlap.
-  const turned = points.map(({ x, y }) => c * x + s * y);
-  const middle = medianOf(turned);
-  let amplitude = 0;
-  for (const value of turned) amplitude += (value - middle) ** 3;
-  const sign = amplitude >= 0 ? 1 : -1;
-  return {
-    phaseRad: sign > 0 ? angle : angle + Math.PI,
-    explained: c * c * uu + 2 * c * s * uv + s * s * vv,
-    curvature: Math.hypot(uu - vv, 2 * uv),
-    coefficients: p.map((value, k) => sign * (c * value + s * q[k]!)),
-  };
 }
