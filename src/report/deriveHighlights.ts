@@ -1,3 +1,4 @@
+import { forecastWord } from './forecastWord.js';
 import { formatElapsed, formatTarget, formatU, formatValue } from './formatNumber.js';
 import type { ReportInput } from './reportInput.js';
 import type { Highlight } from './reportModel.js';
@@ -36,7 +37,8 @@ export function deriveHighlights({ series, method }: ReportInput): Highlight[] {
   return highlights;
 }
 
-function targetHighlight({ states, forecast }: ReportInput['series'], target: number | undefined): Highlight | undefined {
+function targetHighlight(series: ReportInput['series'], target: number | undefined): Highlight | undefined {
+  const { states, forecast } = series;
   if (target === undefined) return undefined;
   const label = `Target ${formatTarget(target)}`;
   if (states.some(({ state }) => state === 'target-reached'))
@@ -48,7 +50,7 @@ function targetHighlight({ states, forecast }: ReportInput['series'], target: nu
   return {
     label,
     value: `at ${formatElapsed(forecast.elapsedS)}`,
-    detail: `expected; 95 %: ${formatElapsed(forecast.lowS)} to ${formatElapsed(forecast.highS)}`,
+    detail: `${forecastWord(series).replace(/;$/, '')}; 95 %: ${formatElapsed(forecast.lowS)} to ${formatElapsed(forecast.highS)}`,
     tone: 'plain',
   };
 }

@@ -1,4 +1,5 @@
 import type { Series } from '../series/series.js';
+import { forecastWord } from './forecastWord.js';
 import { formatElapsed, formatPercent, formatTarget, formatTime } from './formatNumber.js';
 
 /** One run on the page of all runs. */
@@ -72,10 +73,8 @@ function encodeName(name: Buffer): string {
 
 const looks = ['limit-broken', 'balance-lost', 'stalled', 'silent', 'trouble', 'new-signal'] as const;
 
-function stateOf(
-  { states, forecast, points }: Series,
-  target: number | undefined,
-): Pick<IndexCard, 'word' | 'detail' | 'tone' | 'isLive'> {
+function stateOf(series: Series, target: number | undefined): Pick<IndexCard, 'word' | 'detail' | 'tone' | 'isLive'> {
+  const { states, forecast, points } = series;
   const of = (name: string) => states.find(({ state }) => state === name);
   const isLive = of('final') === undefined && of('target-reached') === undefined;
   const look = looks.map(of).find((state) => state !== undefined);
@@ -87,7 +86,7 @@ function stateOf(
   if (forecast?.elapsedS !== undefined && forecast.lowS !== undefined && forecast.highS !== undefined && target !== undefined) {
     const zero = Date.parse(first.acquired) - 1000 * first.elapsedS;
     const at = (seconds: number) => new Date(zero + 1000 * seconds).toISOString().slice(11, 16);
-    const detail = `${formatTarget(target)} expected at ${at(forecast.elapsedS)} UTC (${at(forecast.lowS)} to ${at(forecast.highS)})`;
+    const detail = `${formatTarget(target)} ${forecastWord(series)} at ${at(forecast.elapsedS)} UTC (${at(forecast.lowS)} to ${at(forecast.highS)})`;
     return { word: 'Running:', detail, tone: 'run', isLive };
   }
   return { word: 'Running', detail: forecast && target !== undefined ? `; ${forecast.words}` : '', tone: 'run', isLive };

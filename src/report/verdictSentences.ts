@@ -1,4 +1,5 @@
 import { judgeLimits } from '../amount/judgeLimits.js';
+import { forecastWord } from './forecastWord.js';
 import { formatElapsed, formatPercent, formatQuantity, formatTarget, formatU } from './formatNumber.js';
 import type { ReportInput } from './reportInput.js';
 
@@ -27,7 +28,7 @@ export function verdictSentences({ series, method }: ReportInput): string[] {
     sentences.push(
       `${name} ${formatQuantity(ppm, u)} ppm is ${verdict === 'above' ? 'above' : 'near'} its limit of ${limitPpm} ppm.`,
     );
-  const growing = series.unassignedLines?.filter(({ trend }) => trend === 'grows') ?? [];
+  const growing = series.unassignedLines?.filter(({ trend, areas }) => trend === 'grows' && isOften(areas)) ?? [];
   if (growing.length > 0)
     sentences.push(
       `Unassigned and growing: ${growing
@@ -43,7 +44,8 @@ export function verdictSentences({ series, method }: ReportInput): string[] {
   return sentences;
 }
 
-function targetSentences({ states, forecast, kinetics }: ReportInput['series'], target: number | undefined): string[] {
+function targetSentences(series: ReportInput['series'], target: number | undefined): string[] {
+  const { states, forecast, kinetics } = series;
   if (target === undefined) return [];
   const reached = states.find(({ state }) => state === 'target-reached');
   if (reached) return [`Target of ${formatTarget(target)} reached: ${reached.evidence}.`];
@@ -54,11 +56,16 @@ function targetSentences({ states, forecast, kinetics }: ReportInput['series'], 
     const interval = `95 % interval ${formatElapsed(forecast.lowS)} to ${formatElapsed(forecast.highS)}`;
     return [
       ...others,
-      `Target of ${formatTarget(target)} expected ${formatElapsed(forecast.elapsedS)} after the start (${interval}; ${forecast.words}).`,
+      `Target of ${formatTarget(target)} ${forecastWord(series)} ${formatElapsed(forecast.elapsedS)} after the start (${interval}; ${forecast.words}).`,
     ];
   }
   return [
     ...others,
     `Target of ${formatTarget(target)} not reached; forecast ${forecast?.words ?? 'not made'}${kinetics ? ` (${kinetics.words})` : ''}.`,
   ];
+}
+
+/** Page 1 names a growing line only when it was seen in a good part of the points; all of them stand in the section on amounts. */
+function isOften(areas: readonly (number | null)[]): boolean {
+  return areas.filter((area) => area !== null).length >= Math.max(3, 0.4 * areas.length);
 }
