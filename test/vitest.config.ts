@@ -1,6 +1,8 @@
+import { join } from 'node:path';
 import { defineConfig } from 'vitest/config';
 
 export default defineConfig({
+  root: join(import.meta.dirname, '..'),
   test: {
     include: ['test/**/*.test.ts'],
     exclude: ['test/soak/**', 'test/bench/**'],

@@ -1,5 +1,5 @@
 import { parsePattern } from './parsePattern.js';
-import type { Splitting } from './pattern.js';
+import type { Pattern, Splitting } from './pattern.js';
 
 const names: Readonly<Record<Splitting['letter'], string>> = {
   s: 'singlet',
@@ -15,6 +15,19 @@ const names: Readonly<Record<Splitting['letter'], string>> = {
 const counts = ['no', 'one', 'two', 'three', 'four', 'five', 'six', 'seven', 'eight', 'nine', 'ten', 'eleven', 'twelve'];
 
 /**
+ * A pattern in words: `quartet`, `doublet of triplets`, `broad singlet`, `multiplet`.
+ *
+ * @source common practice
+ */
+export function patternNoun(pattern: Pick<Pattern, 'splittings' | 'isBroad' | 'isMultiplet'>): string {
+  const broad = pattern.isBroad ? 'broad ' : '';
+  if (pattern.isMultiplet) return `${broad}multiplet`;
+  const [first, ...rest] = pattern.splittings.filter(({ letter }) => letter !== 's');
+  if (first === undefined) return `${broad}${names.s}`;
+  return broad + [names[first.letter], ...rest.map(({ letter }) => `${names[letter]}s`)].join(' of ');
+}
+
+/**
  * A pattern in words, with its article: `q` is "a quartet", `dq` "a doublet of quartets", `br s` "a broad singlet".
  *
  * @param text  pattern as printed
@@ -24,12 +37,8 @@ const counts = ['no', 'one', 'two', 'three', 'four', 'five', 'six', 'seven', 'ei
 export function patternWords(text: string): string {
   const parsed = parsePattern(text, []);
   if (!parsed.ok) return text;
-  const { splittings, isBroad, isMultiplet } = parsed.value;
-  const broad = isBroad ? 'broad ' : '';
-  if (isMultiplet) return `a ${broad}multiplet`;
-  const words = splittings.map(({ letter }) => names[letter]);
-  const body = words.length === 0 ? names.s : words.map((word, index) => (index === 0 ? word : `${word}s`)).join(' of ');
-  return `${/^[aeiou]/.test(broad + body) ? 'an' : 'a'} ${broad}${body}`;
+  const noun = patternNoun(parsed.value);
+  return `${/^[aeiou]/.test(noun) ? 'an' : 'a'} ${noun}`;
 }
 
 /** `three neighbours`, `no neighbours`, `one neighbour`. */

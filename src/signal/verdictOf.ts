@@ -1,3 +1,4 @@
+import { patternNoun } from '../pattern/patternWords.js';
 import { splittingLetters } from '../pattern/splittingLetters.js';
 import type { Spectrum } from '../spectrum/spectrum.js';
 import { extraPrefix } from './addExtraLines.js';
@@ -5,7 +6,7 @@ import type { FittedRegion } from './fitRegions.js';
 import type { MeasuredSignal, Verdict } from './measured.js';
 import { misfitOf } from './misfitOf.js';
 import type { Neighbourhood } from './neighbourhood.js';
-import { patternWords } from './patternWords.js';
+
 import type { Rival } from './rivalPattern.js';
 import type { Target } from './signalTargets.js';
 import { sticksOf } from './tailsOf.js';
@@ -53,7 +54,7 @@ export interface Evidence {
  */
 export function verdictOf(spectrum: Spectrum, evidence: Evidence): Judged {
   const { extra, target, area, isPresent, rival } = evidence;
-  const declared = patternWords(target.signal.pattern);
+  const declared = patternNoun(target.signal.pattern);
   if (rival !== undefined && isProven(evidence, rival)) return differing(declared, rival);
   const leftOver = leftOverOf(spectrum, extra, target, area);
   const other = rival === undefined ? {} : { other: { pattern: rival.pattern, odds: rival.oddsAgainstExtras } };
@@ -100,7 +101,7 @@ function isProven({ near, target, isPresent, isExpected }: Evidence, rival: Riva
 
 function differing(declared: string, rival: Rival): Judged {
   const splittings = rival.neighbours.map((neighbours) => ({ letter: splittingLetters[neighbours]!, neighbours }));
-  const found = patternWords({ splittings, isBroad: false, isMultiplet: false });
+  const found = patternNoun({ splittings, isBroad: false, isMultiplet: false });
   const couplingsHz = rival.couplingsHz.map((value) => Math.round(value * 100) / 100);
   const couplings = couplingsHz.length > 0 ? `, J = ${couplingsHz.map((value) => value.toFixed(1)).join(', ')} Hz` : '';
   return {
