@@ -38,7 +38,7 @@ export function deriveSeries(inputs: SeriesInputs): Series {
     ...(kinetics ? { kinetics } : {}),
     ...(forecast ? { forecast } : {}),
     ...(purity ? { purity } : {}),
-    unassignedLines: mergeUnassigned(points),
+    unassignedLines: mergeUnassigned(points, method),
     states: deriveStates(points, method, runFile),
     flags: seriesFlags(points),
   };
