@@ -14,7 +14,10 @@ const swapsMax = 6;
 export function fitFromStarts(window: RegionWindow, model: RegionModel): RegionFit {
   let best = fitRegion(window, model);
   if (model.terms.length < 2) return best;
-  const consider = (starts: ReadonlyMap<number, number>) => {
+  const consider = (
+    starts: ReadonlyMap<number, number>,
+    marginOf: (trial: RegionFit, best: RegionFit) => number = () => 1e-3,
+  ) => {
     const parameters = model.parameters.map(
       (parameter, k): Parameter => ({
         ...parameter,
@@ -22,7 +25,7 @@ export function fitFromStarts(window: RegionWindow, model: RegionModel): RegionF
       }),
     );
     const trial = fitRegion(window, { ...model, parameters });
-    if (trial.cost < best.cost - 1e-3) best = trial;
+    if (trial.cost < best.cost - marginOf(trial, best)) best = trial;
   };
   for (const [a, b] of exchangeable(model, best).slice(0, swapsMax)) {
     consider(
@@ -30,6 +33,7 @@ export function fitFromStarts(window: RegionWindow, model: RegionModel): RegionF
         [a, best.values[b]!],
         [b, best.values[a]!],
       ]),
+      exchangeMargin,
     );
   }
   if (best.chiSquare > doubtfulChiSquare * best.whitened.length) {
@@ -38,6 +42,24 @@ export function fitFromStarts(window: RegionWindow, model: RegionModel): RegionF
     for (const shift of shifts) consider(new Map([[shift, model.parameters[shift]!.mean]]));
   }
   return best;
+}
+
+/** Evidence that an exchange of two signals against their listed order must bring, in units of cost. */
+const decisive = 25;
+
+/** Two signals of nearly the same pattern fit either way: the arrangement nearer to the listed shifts stands unless the data insist. */
+function exchangeMargin(trial: RegionFit, best: RegionFit): number {
+  const [away, awayNow] = [awayFromListed(trial), awayFromListed(best)];
+  if (away > awayNow * 1.2) return decisive;
+  return away < awayNow / 1.2 ? -decisive : 1e-3;
+}
+
+function awayFromListed({ model, values }: RegionFit): number {
+  return model.parameters.reduce(
+    (sum, { kind, mean, low, high }, k) =>
+      kind === 'shift' && high > low ? sum + ((values[k]! - mean) / (high - low)) ** 2 : sum,
+    0,
+  );
 }
 
 /** Pairs of shifts, each of which may stand where the other was found. */

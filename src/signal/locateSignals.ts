@@ -17,6 +17,9 @@ const powerMin = 150;
 const kernelWidths = 4;
 /** Most shifts lie within this share of their search window (common practice: 0.02 of 0.05 ppm after referencing). */
 const usualShare = 0.4;
+/** A signal of less than this share of its strongest neighbour's gain (a seventh of its height) cannot hold its own against what that leaves. */
+const weakShare = 0.02;
+const weakUsualShare = 0.12;
 
 /**
  * Finds the place of each declared pattern inside its search window: lines are weighed by a matched filter, and a place counts
@@ -37,11 +40,13 @@ export function locateSignals(spectrum: Spectrum, targets: readonly Target[], wi
     widthHz,
   )) {
     const open = new Set(group);
+    let strongest = 0;
     while (open.size > 0) {
-      const candidates = [...open].map((target) => ({ target, place: bestPlace(spectrum, left, target, widthHz) }));
+      const candidates = [...open].map((target) => ({ target, place: steadyPlace(spectrum, left, target, widthHz, strongest) }));
       candidates.sort((a, b) => b.place.score - a.place.score || (a.target.key < b.target.key ? -1 : 1));
       const { target, place } = candidates[0]!;
       open.delete(target);
+      strongest = Math.max(strongest, place.gain);
       // Strong lines that the pattern does not fit are placed too: the verdict will say that they differ.
       const isPresent = place.gain > gainMin || place.power > powerMin;
       const shiftHz = isPresent ? place.shiftHz : target.signal.shiftPpm * spectrum.observeMhz;
@@ -50,6 +55,17 @@ export function locateSignals(spectrum: Spectrum, targets: readonly Target[], wi
     }
   }
   return located;
+}
+
+/**
+ * The place of a signal; a weak one beside a strong one stays near where it is listed, for what the strong one leaves of itself would
+ * draw it in.
+ */
+function steadyPlace(spectrum: Spectrum, left: Float64Array, target: Target, widthHz: number, strongest: number): Place {
+  const place = bestPlace(spectrum, left, target, widthHz, usualShare);
+  return place.gain < weakShare * strongest && !target.signal.moves
+    ? bestPlace(spectrum, left, target, widthHz, weakUsualShare)
+    : place;
 }
 
 /** Lines that matter for finding a place: the faint ones of strong coupling do not. */
@@ -68,7 +84,7 @@ interface Place {
   readonly score: number;
 }
 
-function bestPlace(spectrum: Spectrum, left: Float64Array, target: Target, widthHz: number): Place {
+function bestPlace(spectrum: Spectrum, left: Float64Array, target: Target, widthHz: number, share: number): Place {
   const { observeMhz, firstPpm, stepHz, noise } = spectrum;
   const { signal } = target;
   const lines = shownLines(target);
@@ -104,7 +120,7 @@ function bestPlace(spectrum: Spectrum, left: Float64Array, target: Target, width
     }
     const power = (area * area * shares * energy) / (noise * noise);
     const gain = power - (misfit * energy) / (noise * noise);
-    const off = (shiftHz - centre) / (signal.moves ? reach : usualShare * reach);
+    const off = (shiftHz - centre) / (signal.moves ? reach : share * reach);
     const score = gain * Math.exp(-off * off);
     if (score > best.score) best = { shiftHz, gain, area, score, power };
     if (power * Math.exp(-off * off) > strongest.power)
